@@ -1,0 +1,7 @@
+//! bandrule compares computed quasiparticle band energies with photoemission and inverse
+//! photoemission.
+#![forbid(unsafe_code)]
+#![deny(missing_docs)]
+
+pub mod quantity;
+pub mod schema;

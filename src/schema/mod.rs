@@ -1,0 +1,52 @@
+//! The neutral documents: what every reader lowers to and every writer starts from.
+//!
+//! This room owns the shapes of `levels`, `spectrum` and `result`, their provenance, and the trait by
+//! which a position survives. It knows serde and nothing of files, formats or numerics. Arrays are
+//! flat, one entry a row, in file order; energies are in eV and names end in the unit.
+
+mod curves;
+mod finding;
+mod levels;
+mod locate;
+pub mod number;
+mod provenance;
+mod quantity;
+mod result;
+mod spectrum;
+
+pub use curves::{Curves, DensityCurve, Side, SideCurve};
+pub use finding::{Field, Finding, Severity};
+pub use levels::{Computation, Levels};
+pub use locate::Locate;
+pub use provenance::{Provenance, SourceRecord, Step};
+pub use quantity::Quantity;
+pub use result::{
+    Alternative, BudgetRow, Caution, Computed, EdgeLocation, Evaluation, Expanded, FileRecord,
+    FitRecord, Measured, ProtocolEdge, ProtocolRecord, ResultDocument, Shift, SpinGap, Verdict,
+};
+pub use spectrum::{Conditions, IntensityKind, Spectrum};
+
+/// A document that carries its own name and version.
+pub trait Document: serde::Serialize + serde::de::DeserializeOwned + schemars::JsonSchema {
+    /// The kind, as in `bandrule/KIND/VERSION`.
+    const KIND: &'static str;
+    /// The version of the shape.
+    const VERSION: u32 = 1;
+
+    /// The text of the `schema` key.
+    #[must_use]
+    fn identifier() -> String {
+        format!("bandrule/{}/{}", Self::KIND, Self::VERSION)
+    }
+}
+
+/// The JSON Schema (2020-12) of a document, as it stands in `schemas/`.
+#[must_use]
+pub fn json_schema<T: Document>() -> serde_json::Value {
+    let mut schema = schemars::generate::SchemaSettings::draft2020_12()
+        .into_generator()
+        .into_root_schema_for::<T>()
+        .to_value();
+    schema["properties"]["schema"]["const"] = serde_json::Value::from(T::identifier());
+    schema
+}
