@@ -1,0 +1,432 @@
+//! Fit of the broadened computed density to the edge region of one measured curve.
+//!
+//! mu(E) = A [ D(E - s) + B S(E - s) ] + b
+//!
+//! D is the Voigt density of the levels of this side, with the instrument's Gaussian variance plus a
+//! free variance v >= 0 and a free Lorentzian half width gamma >= 0; S its integral from the gap end
+//! of the window into the band, which is the primary signal between an energy and the gap: inelastic
+//! electrons of photoemission lie below their primaries, in inverse photoemission above (the idea of
+//! Shirley, Phys. Rev. B 5, 4709 (1972), without reusing the data's noise). A > 0, B >= 0, b >= 0.
+//! This is the density fit of Kraut, Grant, Waldrop and Kowalczyk, Phys. Rev. Lett. 44, 1620 (1980),
+//! by Poisson likelihood; edge = computed edge + s. The model is smooth in every parameter: bounded
+//! ones run through sines and squares, so that the solver needs no bounds.
+//!
+//! The Fermi occupation is left out: it matters only where an edge lies within a few kT of the Fermi
+//! level.
+
+use nalgebra::DMatrix;
+use statrs::distribution::{ContinuousCDF, Normal};
+
+use super::FWHM_PER_SIGMA;
+use super::density::{Density, Derivatives, Domain, Plan, Sampler, Values};
+use super::least_squares::{Model, Solution, covariance, minimise};
+use super::misfit::{Misfit, runs_probability};
+use super::noise::Noise;
+use super::window::Window;
+use crate::schema::Side;
+
+/// Largest standard deviation of the sample's own Gaussian, eV.
+const SAMPLE_SIGMA_MAX: f64 = 0.3;
+/// Largest Lorentzian half width, eV.
+const GAMMA_MAX: f64 = 0.5;
+/// A fit worse than this probability is called inadequate and its uncertainties are enlarged.
+const INADEQUATE: f64 = 1e-3;
+/// Number of parameters.
+const PARAMETERS: usize = 6;
+
+/// What broadens a curve by known instrument.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Instrument {
+    /// Standard deviation of the instrument's Gaussian, eV; zero where it is not known.
+    pub sigma: f64,
+}
+
+/// What a fit is made of besides the data.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct EdgeFitOptions {
+    /// Which side of the gap.
+    pub side: Side,
+    /// The window of the fit on the measured scale.
+    pub window: Window,
+    /// Where the shift is sought.
+    pub shift: f64,
+    /// How far from there it may end.
+    pub shift_range: f64,
+    /// The instrument.
+    pub instrument: Instrument,
+}
+
+/// The levels of one side and the channels of one window, ready to be fitted.
+#[derive(Debug, Clone)]
+pub struct EdgeProblem {
+    options: EdgeFitOptions,
+    energies: Vec<f64>,
+    values: Vec<f64>,
+    noise: Noise,
+    variance_floor: f64,
+    plan: Plan,
+    sampler: Sampler,
+}
+
+/// A fitted edge region. `covariance` is that of shift, amplitude, variance, gamma, constant, step.
+#[derive(Debug, Clone, PartialEq)]
+pub struct EdgeFit {
+    /// Measured minus computed, eV.
+    pub shift: f64,
+    /// Intensity a state per eV.
+    pub amplitude: f64,
+    /// Variance of the sample's own Gaussian, eV^2.
+    pub variance: f64,
+    /// Lorentzian half width at half maximum, eV.
+    pub gamma: f64,
+    /// Constant background.
+    pub constant: f64,
+    /// Step background a primary signal, 1/eV.
+    pub step: f64,
+    /// Covariance of the six parameters in that order.
+    pub covariance: DMatrix<f64>,
+    /// Variance of the whole Gaussian, instrument included, eV^2.
+    pub total_variance: f64,
+    /// Deviance of counts, chi-square otherwise.
+    pub deviance: f64,
+    /// Pearson's chi-square over the degrees of freedom.
+    pub reduced_chi_square: f64,
+    /// Probability of as large a chi-square in a right model.
+    pub fit_probability: f64,
+    /// Probability of as few runs of one sign in a right model.
+    pub runs_probability: f64,
+    /// Number of channels.
+    pub channels: usize,
+    /// Channels minus parameters.
+    pub degrees_of_freedom: usize,
+    /// Model evaluations of the solver.
+    pub evaluations: usize,
+    /// Whether the solver converged.
+    pub converged: bool,
+    /// The window.
+    pub window: Window,
+}
+
+impl EdgeFit {
+    /// Standard uncertainty of the shift.
+    #[must_use]
+    pub fn shift_uncertainty(&self) -> f64 {
+        self.covariance[(0, 0)].max(0.0).sqrt()
+    }
+
+    /// Gaussian full width at half maximum, instrument and sample, and its standard uncertainty.
+    #[must_use]
+    pub fn gaussian_fwhm(&self) -> (f64, f64) {
+        let sigma = self.total_variance.sqrt();
+        let uncertainty = self.covariance[(2, 2)].max(0.0).sqrt() / (2.0 * sigma);
+        (FWHM_PER_SIGMA * sigma, FWHM_PER_SIGMA * uncertainty)
+    }
+
+    /// Lorentzian full width at half maximum and its standard uncertainty.
+    #[must_use]
+    pub fn lorentzian_fwhm(&self) -> (f64, f64) {
+        let uncertainty = self.covariance[(3, 3)].max(0.0).sqrt();
+        (2.0 * self.gamma, 2.0 * uncertainty)
+    }
+
+    /// Whether the residuals are larger, or in longer runs, than chance makes them.
+    #[must_use]
+    pub fn is_inadequate(&self) -> bool {
+        self.fit_probability < INADEQUATE || self.runs_probability < INADEQUATE
+    }
+
+    /// The six parameters in the order of the covariance.
+    #[must_use]
+    pub fn parameters(&self) -> [f64; PARAMETERS] {
+        [
+            self.shift,
+            self.amplitude,
+            self.variance,
+            self.gamma,
+            self.constant,
+            self.step,
+        ]
+    }
+}
+
+impl EdgeProblem {
+    /// Prepares a fit. `energies` ascending on the measured scale with `values` of the same length;
+    /// only channels in the window are kept. `None` where these are not more than parameters by five.
+    #[must_use]
+    pub fn new(
+        levels: (&[f64], &[f64]),
+        energies: &[f64],
+        values: &[f64],
+        noise: &Noise,
+        options: EdgeFitOptions,
+    ) -> Option<Self> {
+        let part = options.window.indices(energies);
+        if part.len() < PARAMETERS + 5 {
+            return None;
+        }
+        let kept = energies[part.clone()].to_vec();
+        let noise = match noise {
+            Noise::Poisson => Noise::Poisson,
+            Noise::Variance(all) => Noise::Variance(all[part.clone()].to_vec()),
+        };
+        let (first, last) = (kept[0], kept[kept.len() - 1]);
+        let step = (last - first) / f64::from(u32::try_from(kept.len() - 1).unwrap_or(1));
+        let variance_floor = options.instrument.sigma.max(0.5 * step).powi(2);
+        let domain = Domain {
+            centre: 0.5 * (first + last) - options.shift,
+            half_width: 0.5 * (last - first) + options.shift_range,
+            sigma_min: variance_floor.sqrt(),
+            sigma_max: (variance_floor + SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX).sqrt(),
+        };
+        let plan = Plan::new(levels.0, levels.1, domain);
+        let sampler = Sampler::new(&kept, &plan);
+        Some(Self {
+            options,
+            energies: kept,
+            values: values[part].to_vec(),
+            noise,
+            variance_floor,
+            plan,
+            sampler,
+        })
+    }
+
+    /// The same problem without some of its levels.
+    #[must_use]
+    pub fn without(&self, energies: &[f64], weights: &[f64]) -> Self {
+        Self {
+            plan: self.plan.without(energies, weights),
+            ..self.clone()
+        }
+    }
+
+    /// The energies of the window, ascending.
+    #[must_use]
+    pub fn energies(&self) -> &[f64] {
+        &self.energies
+    }
+
+    /// The law of noise of the window's channels.
+    #[must_use]
+    pub fn noise(&self) -> &Noise {
+        &self.noise
+    }
+
+    /// The options it was built with.
+    #[must_use]
+    pub fn options(&self) -> &EdgeFitOptions {
+        &self.options
+    }
+
+    fn misfit(&self) -> Misfit<'_> {
+        Misfit {
+            values: &self.values,
+            noise: &self.noise,
+        }
+    }
+
+    /// Fits from a guess of the amplitude and two pairs of widths; the best is kept.
+    #[must_use]
+    pub fn fit(&self) -> EdgeFit {
+        let starts = [(0.05, 0.02), (0.15, 0.1)];
+        let [narrow, wide] =
+            starts.map(|(sigma, gamma)| self.solve(self.start(self.options.shift, sigma, gamma)));
+        self.report(if wide.deviance < narrow.deviance {
+            &wide
+        } else {
+            &narrow
+        })
+    }
+
+    /// Fits from another fit of nearly the same problem.
+    #[must_use]
+    pub fn fit_from(&self, near: &EdgeFit) -> EdgeFit {
+        self.report(&self.solve(self.internal(&near.parameters())))
+    }
+
+    fn solve(&self, start: Vec<f64>) -> Solution {
+        minimise(self, self.misfit(), start)
+    }
+
+    fn start(&self, shift: f64, sigma: f64, gamma: f64) -> Vec<f64> {
+        let at = Density {
+            shift,
+            variance: self.variance_floor + sigma * sigma,
+            gamma,
+        };
+        let values = self.sampler.values(&self.plan, at);
+        let top = |list: &[f64]| list.iter().copied().fold(0.0, f64::max);
+        let least = self.values.iter().copied().fold(f64::INFINITY, f64::min);
+        let amplitude = (top(&self.values) - least).max(1e-3) / top(&values.density).max(1e-12);
+        self.internal(&[
+            shift,
+            amplitude,
+            sigma * sigma,
+            gamma,
+            least.max(1e-2 * top(&self.values)),
+            0.02,
+        ])
+    }
+
+    /// From the six parameters to those of the solver.
+    fn internal(&self, p: &[f64; PARAMETERS]) -> Vec<f64> {
+        let angle = |fraction: f64| fraction.clamp(0.0, 1.0).sqrt().clamp(0.02, 0.98).asin();
+        let turn = (p[0] - self.options.shift) / self.options.shift_range;
+        vec![
+            turn.clamp(-0.95, 0.95).asin(),
+            p[1].max(1e-300).ln(),
+            angle(p[2] / (SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX)),
+            angle(p[3] / GAMMA_MAX),
+            p[4].max(0.0).sqrt(),
+            p[5].max(1e-6).sqrt(),
+        ]
+    }
+
+    /// From the solver's parameters to the six.
+    fn natural(&self, q: &[f64]) -> [f64; PARAMETERS] {
+        [
+            self.options.shift + self.options.shift_range * q[0].sin(),
+            q[1].exp(),
+            (SAMPLE_SIGMA_MAX * q[2].sin()).powi(2),
+            GAMMA_MAX * q[3].sin().powi(2),
+            q[4] * q[4],
+            q[5] * q[5],
+        ]
+    }
+
+    /// Derivatives of the six with respect to the solver's.
+    fn chain(&self, q: &[f64]) -> [f64; PARAMETERS] {
+        [
+            self.options.shift_range * q[0].cos(),
+            q[1].exp(),
+            SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX * (2.0 * q[2]).sin(),
+            GAMMA_MAX * (2.0 * q[3]).sin(),
+            2.0 * q[4],
+            2.0 * q[5],
+        ]
+    }
+
+    /// The model at six parameters, in the window.
+    #[must_use]
+    pub fn model(&self, p: &[f64; PARAMETERS]) -> Vec<f64> {
+        let values = self.sampler.values(&self.plan, self.density(p));
+        let primary = self.primary(&values.integral);
+        let channels = values.density.iter().zip(&primary);
+        channels
+            .map(|(d, s)| p[1] * (d + p[5] * s) + p[4])
+            .collect()
+    }
+
+    fn density(&self, p: &[f64; PARAMETERS]) -> Density {
+        Density {
+            shift: p[0],
+            variance: self.variance_floor + p[2],
+            gamma: p[3],
+        }
+    }
+
+    /// Integral from the gap end of the window to each channel, from an antiderivative.
+    fn primary(&self, integral: &[f64]) -> Vec<f64> {
+        let last = integral.len() - 1;
+        match self.options.side {
+            Side::Valence => integral.iter().map(|x| integral[last] - x).collect(),
+            Side::Conduction => integral.iter().map(|x| x - integral[0]).collect(),
+        }
+    }
+
+    /// Model and derivatives with respect to the six parameters.
+    fn model_and_derivatives(&self, p: &[f64; PARAMETERS]) -> (Vec<f64>, DMatrix<f64>) {
+        let (values, slopes) = self.sampler.derivatives(&self.plan, self.density(p));
+        let Values { density, integral } = values;
+        let Derivatives {
+            density_shift,
+            density_variance,
+            density_gamma,
+            integral_gamma,
+        } = slopes;
+        let primary = self.primary(&integral);
+        let minus =
+            |list: &[f64], factor: f64| -> Vec<f64> { list.iter().map(|x| -factor * x).collect() };
+        let primary_shift = self.primary(&minus(&density, 1.0));
+        let primary_variance = self.primary(&minus(&density_shift, 0.5));
+        let primary_gamma = self.primary(&integral_gamma);
+        let rows = density.len();
+        let mut jacobian = DMatrix::zeros(rows, PARAMETERS);
+        let mut model = Vec::with_capacity(rows);
+        for i in 0..rows {
+            let shape = density[i] + p[5] * primary[i];
+            model.push(p[1] * shape + p[4]);
+            jacobian[(i, 0)] = p[1] * (density_shift[i] + p[5] * primary_shift[i]);
+            jacobian[(i, 1)] = shape;
+            jacobian[(i, 2)] = p[1] * (density_variance[i] + p[5] * primary_variance[i]);
+            jacobian[(i, 3)] = p[1] * (density_gamma[i] + p[5] * primary_gamma[i]);
+            jacobian[(i, 4)] = 1.0;
+            jacobian[(i, 5)] = p[1] * primary[i];
+        }
+        (model, jacobian)
+    }
+
+    fn report(&self, solution: &Solution) -> EdgeFit {
+        let p = self.natural(&solution.parameters);
+        let (model, jacobian) = self.model_and_derivatives(&p);
+        let misfit = self.misfit();
+        let variances: Vec<f64> = (0..model.len())
+            .map(|i| misfit.variance(i, model[i]))
+            .collect();
+        let residuals = misfit.standardised(&model);
+        let chi_square: f64 = residuals.iter().map(|r| r * r).sum();
+        let dof = model.len() - PARAMETERS;
+        #[allow(clippy::cast_precision_loss)] // A number of channels.
+        let reduced_chi_square = chi_square / dof as f64;
+        let mut fit = EdgeFit {
+            shift: p[0],
+            amplitude: p[1],
+            variance: p[2],
+            gamma: p[3],
+            constant: p[4],
+            step: p[5],
+            covariance: covariance(&jacobian, &variances),
+            total_variance: self.variance_floor + p[2],
+            deviance: solution.deviance,
+            reduced_chi_square,
+            fit_probability: self.fit_probability(chi_square, &variances),
+            runs_probability: runs_probability(&residuals),
+            channels: model.len(),
+            degrees_of_freedom: dof,
+            evaluations: solution.evaluations,
+            converged: solution.converged,
+            window: self.options.window,
+        };
+        if fit.is_inadequate() || matches!(self.noise, Noise::Variance(_)) {
+            fit.covariance *= reduced_chi_square.max(1.0);
+        }
+        fit
+    }
+
+    /// Probability of as large a chi-square, by the normal law with its exact mean and variance:
+    /// a Pearson residual of a Poisson count has kurtosis 3 + 1/mu.
+    fn fit_probability(&self, chi_square: f64, variances: &[f64]) -> f64 {
+        let excess = |variance: &f64| match self.noise {
+            Noise::Poisson => 2.0 + 1.0 / variance,
+            Noise::Variance(_) => 2.0,
+        };
+        let spread = variances.iter().map(excess).sum::<f64>().sqrt();
+        #[allow(clippy::cast_precision_loss)] // A number of channels.
+        let dof = (variances.len() - PARAMETERS) as f64;
+        Normal::standard().sf((chi_square - dof) / spread)
+    }
+}
+
+impl Model for EdgeProblem {
+    fn values(&self, parameters: &[f64]) -> Vec<f64> {
+        self.model(&self.natural(parameters))
+    }
+
+    fn jacobian(&self, parameters: &[f64]) -> (Vec<f64>, DMatrix<f64>) {
+        let (model, mut jacobian) = self.model_and_derivatives(&self.natural(parameters));
+        for (column, slope) in self.chain(parameters).into_iter().enumerate() {
+            jacobian.column_mut(column).scale_mut(slope);
+        }
+        (model, jacobian)
+    }
+}

@@ -1,0 +1,99 @@
+//! The link to the least-squares solver: a model, a misfit and a start give a solution.
+
+use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt};
+use nalgebra::{DMatrix, DVector, Dyn, Owned};
+
+use super::misfit::Misfit;
+
+/// A model with free parameters, one value a channel.
+pub(super) trait Model {
+    /// Values of the model.
+    fn values(&self, parameters: &[f64]) -> Vec<f64>;
+    /// Values, and their derivatives: one row a channel, one column a parameter.
+    fn jacobian(&self, parameters: &[f64]) -> (Vec<f64>, DMatrix<f64>);
+}
+
+/// Where the solver stopped.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct Solution {
+    pub parameters: Vec<f64>,
+    pub deviance: f64,
+    pub evaluations: usize,
+    pub converged: bool,
+}
+
+struct Problem<'a, M> {
+    model: &'a M,
+    misfit: Misfit<'a>,
+    parameters: DVector<f64>,
+}
+
+impl<M: Model> LeastSquaresProblem<f64, Dyn, Dyn> for Problem<'_, M> {
+    type ResidualStorage = Owned<f64, Dyn>;
+    type JacobianStorage = Owned<f64, Dyn, Dyn>;
+    type ParameterStorage = Owned<f64, Dyn>;
+
+    fn set_params(&mut self, parameters: &DVector<f64>) {
+        self.parameters.copy_from(parameters);
+    }
+
+    fn params(&self) -> DVector<f64> {
+        self.parameters.clone()
+    }
+
+    fn residuals(&self) -> Option<DVector<f64>> {
+        let model = self.model.values(self.parameters.as_slice());
+        let channels = model.iter().enumerate();
+        let residuals = channels.map(|(index, &mu)| self.misfit.residual(index, mu).0);
+        Some(DVector::from_iterator(model.len(), residuals))
+    }
+
+    fn jacobian(&self) -> Option<DMatrix<f64>> {
+        let (model, mut jacobian) = self.model.jacobian(self.parameters.as_slice());
+        for (index, &mu) in model.iter().enumerate() {
+            let slope = self.misfit.residual(index, mu).1;
+            jacobian.row_mut(index).scale_mut(slope);
+        }
+        Some(jacobian)
+    }
+}
+
+/// Minimises the misfit of `model` from `start`. Not converging is part of the answer.
+pub(super) fn minimise<M: Model>(model: &M, misfit: Misfit<'_>, start: Vec<f64>) -> Solution {
+    let problem = Problem {
+        model,
+        misfit,
+        parameters: DVector::from_vec(start),
+    };
+    let solver = LevenbergMarquardt::new()
+        .with_ftol(1e-10)
+        .with_xtol(1e-8)
+        .with_gtol(1e-10)
+        .with_patience(40);
+    let (problem, report) = solver.minimize(problem);
+    Solution {
+        parameters: problem.parameters.as_slice().to_vec(),
+        deviance: 2.0 * report.objective_function,
+        evaluations: report.number_of_evaluations,
+        converged: report.termination.was_successful(),
+    }
+}
+
+/// Covariance of parameters from the derivatives of the model, (J' W J)^-1 with weights one over
+/// variance. A direction that the data do not bear at all is left out (pseudo-inverse).
+pub(super) fn covariance(jacobian: &DMatrix<f64>, variances: &[f64]) -> DMatrix<f64> {
+    let mut weighted = jacobian.clone();
+    for (index, variance) in variances.iter().enumerate() {
+        weighted.row_mut(index).scale_mut(variance.sqrt().recip());
+    }
+    let information = weighted.tr_mul(&weighted);
+    let n = information.nrows();
+    let scale: Vec<f64> = (0..n)
+        .map(|i| information[(i, i)].sqrt().max(f64::MIN_POSITIVE))
+        .collect();
+    let scaled = DMatrix::from_fn(n, n, |i, j| information[(i, j)] / (scale[i] * scale[j]));
+    let inverse = scaled
+        .pseudo_inverse(1e-13)
+        .unwrap_or_else(|_| DMatrix::zeros(n, n));
+    DMatrix::from_fn(n, n, |i, j| inverse[(i, j)] / (scale[i] * scale[j]))
+}

@@ -1,0 +1,23 @@
+//! From a study to an answer: calibration, edges, gap, difference, uncertainty budget, verdict.
+//!
+//! This room owns what a comparison means: which numbers are like, what each contributes to the
+//! uncertainty, and when agreement may be stated. It takes only documents that have been through the
+//! rules, calls `align` for every fit, and writes nothing.
+
+mod bands;
+mod budget;
+mod error;
+mod inputs;
+mod outcome;
+mod scale;
+mod side;
+mod study;
+mod verdict;
+
+pub use budget::{Budget, Cause};
+pub use error::Error;
+pub use outcome::{Outcome, compare};
+pub use study::{
+    ComparisonSection, ComputedEnergies, ComputedSection, Correction, NamedFile, Protocol,
+    SideSection, Stated, Study,
+};

@@ -1,0 +1,548 @@
+//! The whole comparison, from a study to a result and its curves.
+
+use super::bands::{Bands, bands};
+use super::budget::{Budget, Cause};
+use super::error::Error;
+use super::inputs::{Inputs, read};
+use super::scale::scale;
+use super::side::{Computed, SideResult, side};
+use super::study::{Protocol, Study};
+use super::verdict::{Grounds, en_score, verdict};
+use crate::align::{
+    Density, Domain, Plan, Sampler, jackknife_covariance, random_groups,
+};
+use crate::quantity::{Reference, rounded};
+use crate::schema::{
+    Alternative, Caution, Curves, DensityCurve, Document, Expanded, FitRecord, Measured,
+    ProtocolEdge, ProtocolRecord, Provenance, Quantity, ResultDocument, Shift, Side, SideCurve,
+    Verdict,
+};
+
+/// Deviance over the dispersion within which another minimum competes: a likelihood ratio of 1/1800.
+const COMPETING: f64 = 15.0;
+
+/// A comparison.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Outcome {
+    /// What was found.
+    pub result: ResultDocument,
+    /// The curves behind it.
+    pub curves: Curves,
+}
+
+/// Compares what a study names.
+///
+/// # Errors
+/// [`Error::Refused`] where the study or a file cannot be read, contradicts another, or lacks what a
+/// step needs; [`Error::Findings`] where the rules find errors in the data.
+pub fn compare(study: &Study) -> Result<Outcome, Error> {
+    let inputs = read(study)?;
+    let mut provenance = provenance(study, &inputs);
+    let bands = bands(&inputs.levels, &study.computed)?;
+    let sides = sides(study, &inputs, &bands, &mut provenance)?;
+    let comparison = Comparison {
+        study,
+        bands: &bands,
+        sides: &sides,
+    };
+    let result = comparison.result(inputs, provenance);
+    Ok(Outcome {
+        result,
+        curves: comparison.curves(),
+    })
+}
+
+fn provenance(study: &Study, inputs: &Inputs) -> Provenance {
+    let mut provenance = Provenance::default();
+    let mut documents = vec![&inputs.levels.document.provenance];
+    for side in &inputs.sides {
+        documents.push(&side.spectrum.document.provenance);
+        documents.extend(side.metal.as_ref().map(|metal| &metal.document.provenance));
+    }
+    provenance.sources.push(study.source.record().clone());
+    for document in documents {
+        provenance.sources.extend(document.sources.iter().cloned());
+        provenance.steps.extend(document.steps.iter().cloned());
+    }
+    provenance
+}
+
+fn sides(
+    study: &Study,
+    inputs: &Inputs,
+    bands: &Bands,
+    provenance: &mut Provenance,
+) -> Result<Vec<SideResult>, Error> {
+    let (groups, count) = random_groups(bands.points);
+    let count = if count < 4 { 0 } else { count };
+    let mut results = Vec::new();
+    let mut problems = Vec::new();
+    for input in &inputs.sides {
+        let (levels, edge) = bands.side(input.side);
+        let computed = Computed {
+            levels,
+            edge,
+            groups: (&groups, count),
+        };
+        let result = scale(input, provenance)
+            .and_then(|scale| side(input, scale, computed, &study.comparison));
+        match result {
+            Ok(result) => results.push(result),
+            Err(problem) => problems.push(problem),
+        }
+    }
+    if problems.is_empty() {
+        Ok(results)
+    } else {
+        Err(Error::Refused(problems))
+    }
+}
+
+struct Comparison<'a> {
+    study: &'a Study,
+    bands: &'a Bands,
+    sides: &'a [SideResult],
+}
+
+impl Comparison<'_> {
+    fn side(&self, side: Side) -> Option<&SideResult> {
+        self.sides.iter().find(|result| result.side == side)
+    }
+
+    /// The reference that both sides share; that of the only side where there is one.
+    fn reference(&self) -> Reference {
+        let mut references = self.sides.iter().map(|side| side.scale.reference);
+        let first = references.next().unwrap_or_default();
+        if references.all(|other| other == first) {
+            first
+        } else {
+            Reference::Unknown
+        }
+    }
+
+    /// Whether the two sides may be subtracted.
+    fn is_tied(&self) -> bool {
+        self.sides.len() == 2 && self.reference() != Reference::Unknown
+    }
+
+    fn result(&self, inputs: Inputs, mut provenance: Provenance) -> ResultDocument {
+        let budget = self.budget();
+        let protocols = self.protocols();
+        let measured = self.measured(&budget, &protocols);
+        let mut computed = self.bands.record.clone();
+        computed.gap = computed.gap.map(|gap| budget.computed_gap(gap.value));
+        let corrected = computed.gap.map(|gap| self.corrected(gap.value));
+        computed.corrected_gap = corrected.map(|gap| self.with_corrections(&budget, gap));
+        let cautions = self.cautions(&measured);
+        let expanded = budget.difference();
+        let compared = measured.gap.zip(corrected).map(|(m, c)| c - m.value);
+        let verdict = self.verdict(compared, &expanded, &cautions);
+        self.steps(&mut provenance);
+        ResultDocument {
+            schema: ResultDocument::identifier(),
+            title: self.study.title.clone(),
+            shift: self.shift(&measured),
+            difference: compared.map(|d| {
+                Quantity::new(d, expanded.standard_uncertainty_ev)
+                    .with_interval(expanded.expanded_uncertainty_ev)
+            }),
+            en_score: compared.and_then(|d| en_score(d, &expanded)),
+            expanded: compared.map(|_| expanded),
+            tolerance_ev: self.study.comparison.tolerance,
+            budget: budget.rows(),
+            verdict,
+            cautions,
+            protocols,
+            fits: self.sides.iter().map(fit_record).collect(),
+            findings: inputs.findings,
+            provenance,
+            files: Vec::new(),
+            measured,
+            computed,
+        }
+    }
+
+    fn corrected(&self, gap: f64) -> f64 {
+        let parts = self.study.corrections.iter();
+        gap + parts.map(|c| c.sign * c.stated.value).sum::<f64>()
+    }
+
+    fn with_corrections(&self, budget: &Budget, gap: f64) -> Quantity {
+        budget.computed_gap(gap)
+    }
+
+    fn budget(&self) -> Budget {
+        let mut budget = Budget::default();
+        for side in self.sides {
+            budget.add(self.statistics(side));
+            for cause in &side.causes {
+                budget.add(cause.clone());
+            }
+            budget.add(self.protocol(side));
+        }
+        if let Some(cause) = self.sampling() {
+            budget.add(cause);
+        }
+        for (name, stated) in &self.study.computed.uncertainty {
+            let basis = format!("{}:{}", stated.place.file, stated.place.line);
+            let name = format!("{}, computed", name.replace('_', " "));
+            budget.add(Cause::of_computed_gap(name, Some(stated.value), basis));
+        }
+        if self.study.computed.uncertainty.is_empty() {
+            let basis = "not stated: add [computed.uncertainty]".to_owned();
+            budget.add(Cause::of_computed_gap("computed gap".to_owned(), None, basis));
+        }
+        for correction in &self.study.corrections {
+            let stated = &correction.stated;
+            let basis = format!("{}:{}", stated.place.file, stated.place.line);
+            let name = format!("{}, correction", correction.name.replace('_', " "));
+            budget.add(Cause::of_computed_gap(name, stated.standard_uncertainty, basis));
+        }
+        budget
+    }
+
+    fn headline(&self) -> Protocol {
+        self.study.comparison.protocols[0]
+    }
+
+    fn edge_of(side: &SideResult, protocol: Protocol) -> Option<&ProtocolEdge> {
+        let found = side.edges.iter().find(|(known, _)| *known == protocol);
+        found.map(|(_, edge)| edge)
+    }
+
+    fn statistics(&self, side: &SideResult) -> Cause {
+        let u = Self::edge_of(side, self.headline()).map(|edge| edge.edge.uncertainty_or_zero());
+        let degrees = f64::from(u32::try_from(side.fit.degrees_of_freedom).unwrap_or(u32::MAX));
+        let basis = format!("{} of {} channels", self.headline().name(), side.fit.channels);
+        let name = format!("counting statistics, {}", side.side.technique());
+        let cause = Cause::of_edge(name, side.side, u, basis);
+        match side.curve.statistics {
+            "poisson" => cause.by_statistics(f64::INFINITY),
+            _ => cause.by_statistics(degrees),
+        }
+    }
+
+    /// What two protocols differ by beyond their own uncertainties and the sampling that moves them
+    /// apart, as a rectangular distribution of that half width.
+    fn protocol(&self, side: &SideResult) -> Cause {
+        let edges: Vec<Quantity> = side.edges.iter().map(|(_, edge)| edge.edge).collect();
+        let sampling = jackknife_covariance(&side.jackknife, &side.jackknife);
+        let name = format!("protocol, {}", side.side.technique());
+        let [first, second] = edges.as_slice() else {
+            let basis = "one protocol only: nothing to hold it against".to_owned();
+            return Cause::of_edge(name, side.side, None, basis);
+        };
+        let noise = first.uncertainty_or_zero().powi(2)
+            + second.uncertainty_or_zero().powi(2)
+            + if side.jackknife.is_empty() { 0.0 } else { sampling };
+        let excess = ((first.value - second.value).powi(2) - noise).max(0.0);
+        let basis = format!(
+            "protocols differ by {:.3} eV, {:.3} eV expected of noise",
+            (first.value - second.value).abs(),
+            noise.sqrt()
+        );
+        Cause::of_edge(name, side.side, Some((excess / 3.0).sqrt()), basis)
+    }
+
+    /// Sampling of the Brillouin zone, jointly for both edges.
+    fn sampling(&self) -> Option<Cause> {
+        let of = |side: Side| self.side(side).map_or(&[][..], |result| &result.jackknife);
+        let (valence, conduction) = (of(Side::Valence), of(Side::Conduction));
+        let groups = valence.len().max(conduction.len());
+        let name = "sampling of the Brillouin zone".to_owned();
+        if groups == 0 {
+            let basis = "not known: the table names fewer than four k-points".to_owned();
+            return Some(Cause::of_computed_gap(name, None, basis));
+        }
+        let variance = |list: &[f64]| {
+            if list.is_empty() {
+                0.0
+            } else {
+                jackknife_covariance(list, list)
+            }
+        };
+        let (v, c) = (variance(valence), variance(conduction));
+        let shared = if valence.len() == conduction.len() {
+            jackknife_covariance(valence, conduction)
+        } else {
+            0.0
+        };
+        let basis = format!("jackknife over {groups} groups of k-points");
+        let degrees = f64::from(u32::try_from(groups - 1).unwrap_or(u32::MAX));
+        let gap = (v + c - 2.0 * shared).max(0.0).sqrt();
+        Some(Cause::of_both_edges(name, v.sqrt(), c.sqrt(), gap, basis).by_statistics(degrees))
+    }
+
+    fn protocols(&self) -> Vec<ProtocolRecord> {
+        let tied = self.is_tied();
+        let record = |&protocol: &Protocol| {
+            let edge = |side| self.side(side).and_then(|s| Self::edge_of(s, protocol)).cloned();
+            let (valence, conduction) = (edge(Side::Valence), edge(Side::Conduction));
+            let apart = |part: fn(&ProtocolEdge) -> Quantity| {
+                let (v, c) = (part(valence.as_ref()?), part(conduction.as_ref()?));
+                let u = v.uncertainty_or_zero().hypot(c.uncertainty_or_zero());
+                tied.then(|| Quantity::new(c.value - v.value, u))
+            };
+            ProtocolRecord {
+                protocol: protocol.name().to_owned(),
+                model_dependent: protocol == Protocol::DensityFit,
+                headline: protocol == self.headline(),
+                gap: apart(|edge| edge.edge),
+                onset_gap: apart(|edge| edge.onset),
+                valence,
+                conduction,
+            }
+        };
+        self.study.comparison.protocols.iter().map(record).collect()
+    }
+
+    /// The headline numbers. The raw onset gap is that of the first protocol that reads an onset.
+    fn measured(&self, budget: &Budget, protocols: &[ProtocolRecord]) -> Measured {
+        let headline = &protocols[0];
+        let reads = protocols.iter().find(|p| !p.model_dependent);
+        let known = self.reference() != Reference::Unknown || self.sides.len() == 1;
+        let edge = |side: Side, edge: &Option<ProtocolEdge>| {
+            let edge = edge.as_ref().filter(|_| known)?;
+            Some(budget.edge(side, edge.edge.value))
+        };
+        Measured {
+            reference: self.reference(),
+            valence_edge: edge(Side::Valence, &headline.valence),
+            conduction_edge: edge(Side::Conduction, &headline.conduction),
+            gap: headline.gap.map(|gap| budget.gap(gap.value)),
+            onset_gap: reads.unwrap_or(headline).onset_gap,
+        }
+    }
+
+    /// Measured minus computed edge of the headline protocol.
+    fn shift(&self, measured: &Measured) -> Shift {
+        let of = |side: Side, edge: Option<Quantity>| {
+            let (_, computed) = self.bands.side(side);
+            let moved = |x: f64| x - computed;
+            edge.map(|edge| Quantity {
+                value: moved(edge.value),
+                lower: edge.lower.map(moved),
+                upper: edge.upper.map(moved),
+                ..edge
+            })
+        };
+        Shift {
+            valence: of(Side::Valence, measured.valence_edge),
+            conduction: of(Side::Conduction, measured.conduction_edge),
+        }
+    }
+
+    fn verdict(&self, compared: Option<f64>, expanded: &Expanded, cautions: &[Caution]) -> Verdict {
+        match compared {
+            Some(difference) => verdict(Grounds {
+                difference,
+                expanded,
+                tolerance: self.study.comparison.tolerance,
+                computed_stated: !self.study.computed.uncertainty.is_empty(),
+                energies: self.study.computed.energies,
+                cautions,
+            }),
+            None => Verdict {
+                agrees: None,
+                statement: format!("No verdict: {}.", self.why_no_difference()),
+            },
+        }
+    }
+
+    fn why_no_difference(&self) -> &'static str {
+        if self.bands.record.gap.is_none() {
+            "the computed levels have no gap, the lowest empty one lies below the highest occupied one"
+        } else if self.sides.len() < 2 {
+            "a gap needs both photoemission and inverse photoemission; the study names one of them"
+        } else if !self.is_tied() {
+            "the two measured sides are not tied to one reference; state reference = \"fermi\" for \
+             both, or give the Fermi edge of a metal (fermi_edge) for the side that has none"
+        } else {
+            "the headline protocol found no edge on one of the sides"
+        }
+    }
+
+    fn cautions(&self, measured: &Measured) -> Vec<Caution> {
+        let mut list = Vec::new();
+        for side in self.sides {
+            side_cautions(side, &mut list);
+        }
+        let outside = |edge: Option<Quantity>, sign: f64| edge.is_some_and(|e| sign * e.value > 0.0);
+        if self.reference() == Reference::Fermi
+            && (outside(measured.valence_edge, 1.0) || outside(measured.conduction_edge, -1.0))
+        {
+            list.push(Caution {
+                name: "fermi-outside-gap".to_owned(),
+                message: "the Fermi level lies outside the measured gap: check the calibration of \
+                          both sides, charging, and that both were taken from one surface"
+                    .to_owned(),
+            });
+        }
+        list
+    }
+
+    fn steps(&self, provenance: &mut Provenance) {
+        for correction in &self.study.corrections {
+            provenance.step(
+                format!("correction {}", correction.name),
+                format!("{} eV on the computed gap", correction.sign * correction.stated.value),
+            );
+        }
+        for side in self.sides {
+            let fit = &side.fit;
+            let variance = fit.shift_uncertainty();
+            provenance.step(
+                format!("fit of the {} edge", side.side.name()),
+                format!(
+                    "{} to {} eV, {} channels, {}: shift {} eV",
+                    rounded(fit.window.start, 0.1),
+                    rounded(fit.window.stop, 0.1),
+                    fit.channels,
+                    side.curve.statistics,
+                    rounded(fit.shift, variance)
+                ),
+            );
+        }
+    }
+
+    fn curves(&self) -> Curves {
+        let drawn = self.sides.iter().map(|side| {
+            let (levels, _) = self.bands.side(side.side);
+            drawn(side, &levels.energies, &levels.weights)
+        });
+        let (sides, densities) = drawn.unzip();
+        Curves { sides, densities }
+    }
+}
+
+fn fit_record(side: &SideResult) -> FitRecord {
+    let fit = &side.fit;
+    let (gaussian, gaussian_u) = fit.gaussian_fwhm();
+    let (lorentzian, lorentzian_u) = fit.lorentzian_fwhm();
+    FitRecord {
+        side: side.side,
+        shift: Quantity::new(fit.shift, fit.shift_uncertainty()),
+        gaussian_fwhm: Quantity::new(gaussian, gaussian_u),
+        lorentzian_fwhm: Quantity::new(lorentzian, lorentzian_u),
+        window_start_ev: fit.window.start,
+        window_stop_ev: fit.window.stop,
+        channels: fit.channels,
+        degrees_of_freedom: fit.degrees_of_freedom,
+        statistics: side.curve.statistics.to_owned(),
+        reduced_chi_square: fit.reduced_chi_square,
+        runs_probability: fit.runs_probability,
+        evaluations: fit.evaluations,
+        converged: fit.converged,
+        alternatives: competing(side),
+    }
+}
+
+fn competing(side: &SideResult) -> Vec<Alternative> {
+    let others = side.alignment.alternatives.iter();
+    others
+        .filter(|(_, above)| *above < COMPETING)
+        .map(|&(shift_ev, deviance_above_best)| Alternative {
+            shift_ev,
+            deviance_above_best,
+        })
+        .collect()
+}
+
+fn side_cautions(side: &SideResult, list: &mut Vec<Caution>) {
+    let technique = side.side.technique();
+    let mut caution = |name: &str, message: String| {
+        list.push(Caution {
+            name: name.to_owned(),
+            message: format!("{technique}: {message}"),
+        });
+    };
+    let fit = &side.fit;
+    if fit.is_inadequate() || !fit.converged {
+        caution(
+            "model-inadequate",
+            format!(
+                "the fitted model misses the curve by more than noise (reduced chi-square {:.2}, \
+                 runs test {:.1e}{}); look at the residuals before you trust the edge",
+                fit.reduced_chi_square,
+                fit.runs_probability,
+                if fit.converged { "" } else { ", not converged" }
+            ),
+        );
+    }
+    let others = competing(side);
+    if !others.is_empty() {
+        let shifts: Vec<String> = others.iter().map(|a| format!("{:.2}", a.shift_ev)).collect();
+        caution(
+            "alignment-ambiguous",
+            format!("shifts of {} eV fit nearly as well", shifts.join(", ")),
+        );
+    }
+    let near = 1.5 * fit.gaussian_fwhm().0;
+    let edge = side.computed_edge + fit.shift;
+    let ends = side.curve.energies.first().zip(side.curve.energies.last());
+    if ends.is_some_and(|(first, last)| edge - first < near || last - edge < near) {
+        caution(
+            "edge-near-window-end",
+            format!("the edge lies within {near:.2} eV of the end of the curve; measure farther"),
+        );
+    }
+}
+
+/// The curves of one side over the whole measured range.
+fn drawn(side: &SideResult, energies: &[f64], weights: &[f64]) -> (SideCurve, DensityCurve) {
+    let fit = &side.fit;
+    let curve = &side.curve;
+    let points = &curve.energies;
+    let (first, last) = (points[0], points[points.len() - 1]);
+    let domain = Domain {
+        centre: 0.5 * (first + last) - fit.shift,
+        half_width: 0.5 * (last - first) + 0.1,
+        sigma_min: fit.total_variance.sqrt(),
+        sigma_max: fit.total_variance.sqrt(),
+    };
+    let plan = Plan::new(energies, weights, domain);
+    let at = Density {
+        shift: fit.shift,
+        variance: fit.total_variance,
+        gamma: fit.gamma,
+    };
+    let values = Sampler::new(points, &plan).values(&plan, at);
+    let gap_end = match side.side {
+        Side::Valence => fit.window.indices(points).end.saturating_sub(1),
+        Side::Conduction => fit.window.indices(points).start,
+    };
+    let zero = values.integral[gap_end];
+    let primary = values.integral.iter().map(|x| match side.side {
+        Side::Valence => (zero - x).max(0.0),
+        Side::Conduction => (x - zero).max(0.0),
+    });
+    let background: Vec<f64> = primary
+        .map(|p| fit.constant + fit.amplitude * fit.step * p)
+        .collect();
+    let density: Vec<f64> = values.density.iter().map(|d| fit.amplitude * d).collect();
+    let model: Vec<f64> = background.iter().zip(&density).map(|(b, d)| b + d).collect();
+    let misfit = crate::align::Misfit {
+        values: &curve.values,
+        noise: &curve.noise,
+    };
+    let standard_uncertainty = (0..model.len())
+        .map(|i| misfit.variance(i, curve.values[i].max(1.0)).sqrt())
+        .collect();
+    let part = DensityCurve {
+        side: side.side,
+        energy_ev: points.clone(),
+        density,
+    };
+    let whole = SideCurve {
+        side: side.side,
+        intensity_unit: curve.unit,
+        energy_ev: points.clone(),
+        measured: curve.values.clone(),
+        standard_uncertainty,
+        residual: misfit.standardised(&model),
+        model,
+        background,
+        window_ev: (fit.window.start, fit.window.stop),
+    };
+    (whole, part)
+}
