@@ -44,12 +44,12 @@ impl Band {
 
     fn energy(&self, k: KPoint) -> f64 {
         let [x, y, z] = k.map(|component| (std::f64::consts::TAU * component).cos());
-        let [a, b, c] = self.first;
-        self.centre + a * x + b * y + c * z + self.second * (x * y + y * z + z * x)
+        let first = self.first[0] * x + self.first[1] * y + self.first[2] * z;
+        self.centre + first + self.second * (x * y + y * z + z * x)
     }
 }
 
-/// Occupied and empty bands on the true energy scale, E - E_F.
+/// Occupied and empty bands on the true energy scale, `E - E_F`.
 #[derive(Debug, Clone)]
 pub struct Bands {
     occupied: Vec<Band>,

@@ -54,6 +54,7 @@ pub enum Secondaries {
 
 /// The widths that an event is displaced by, full widths in eV.
 #[derive(Debug, Clone, Copy)]
+#[allow(clippy::struct_field_names)] // the postfix says which width
 pub struct Widths {
     pub instrument_fwhm: f64,
     pub sample_gaussian_fwhm: f64,

@@ -18,12 +18,12 @@
 //! - The data are made from levels at 20,000 random k-points of the full zone with the two extremal
 //!   points among them. The table holds 600 of these, again with the two extremal points, all of equal
 //!   weight, so the sampling of the zone is a real error of the table.
-//! - The recorded kinetic energy of an electron is E - E_F + (true photon energy) - (true work function) +
+//! - The recorded kinetic energy of an electron is `E - E_F` + (true photon energy) - (true work function) +
 //!   (displacement of the channels). The work function is 0.02 off what the study states (normal), the
 //!   photon energy 0.01 where the study states an uncertainty and exact where it does not, the channels uniformly
 //!   up to half a channel. Half of the studies give the Fermi edge of a metal on the same axis, with all three errors,
 //!   in place of the work function: `metal_edge` is its true place there.
-//! - The recorded axis of inverse photoemission is E - E_F - (true offset) + (displacement of the channels),
+//! - The recorded axis of inverse photoemission is `E - E_F` - (true offset) + (displacement of the channels),
 //!   the offset drawn from N(0, 0.03), which the study states as an offset of 0 to be added.
 //! - True resolutions are drawn about the stated ones with their stated uncertainties.
 
