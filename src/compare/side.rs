@@ -29,10 +29,8 @@ pub(super) struct SideResult {
     pub scale: Scale,
     pub curve: Curve,
     pub computed_edge: f64,
-    pub problem: EdgeProblem,
     pub fit: EdgeFit,
     pub alignment: Alignment,
-    pub instrument: Instrument,
     pub edges: Vec<(Protocol, ProtocolEdge)>,
     /// The shift without each group of k-points.
     pub jackknife: Vec<f64>,
@@ -76,10 +74,8 @@ pub(super) fn side(
     Ok(SideResult {
         side: input.side,
         computed_edge: computed.edge,
-        problem,
         fit,
         alignment,
-        instrument,
         edges,
         jackknife,
         causes,
