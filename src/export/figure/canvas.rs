@@ -65,7 +65,7 @@ pub(super) fn text_width(text: &str, size: f64) -> f64 {
 }
 
 /// How much wider bold text is.
-pub(super) const BOLD: f64 = 1.08;
+pub(super) const BOLD: f64 = 1.12;
 
 /// What is drawn on.
 pub(super) struct Canvas<'a> {

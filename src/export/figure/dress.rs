@@ -59,13 +59,10 @@ fn set_fermi(line: &str) -> String {
     let mut text = line.to_owned();
     if let Some((before, after)) = line.split_once("E_F") {
         let before = before.replace('E', italic);
-        let after = if after.is_empty() {
-            String::new()
-        } else {
-            format!(
-                "<tspan dy=\"-0.21em\">{}</tspan>",
-                after.replace(' ', "\u{a0}")
-            )
+        // A shift, for not every renderer keeps a space at the head of a span.
+        let after = match after.trim_start() {
+            "" => String::new(),
+            after => format!("<tspan dx=\"0.3em\" dy=\"-0.21em\">{after}</tspan>"),
         };
         text = format!("{before}{italic}{index}{after}");
     } else if let Some(after) = line.strip_prefix("E ") {

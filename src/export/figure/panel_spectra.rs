@@ -52,6 +52,17 @@ pub(super) fn draw(canvas: &mut Canvas, frame: &Frame, curves: &Curves) -> Resul
         model(canvas, &scale, side, &mut places)?;
     }
     axis(canvas, &scale)?;
+    if sides.is_empty() {
+        let middle = (
+            f64::midpoint(LEFT, RIGHT),
+            f64::midpoint(SPECTRA.top, SPECTRA.bottom),
+        );
+        canvas.text(
+            "no measured curve",
+            middle,
+            &Type::new(SOFT, LABEL, Anchor::Middle),
+        )?;
+    }
     let labels = labels(&scale, &sides, &shapes);
     labels
         .iter()
@@ -339,10 +350,10 @@ fn axis(canvas: &mut Canvas, scale: &Scale) -> Result<(), Error> {
 
 /// The names of what is drawn, the most important first.
 fn labels(scale: &Scale, sides: &[Unit], shapes: &[Shape]) -> Vec<Label> {
-    let plain = |lines: &[&str], room: Room, targets: Vec<Point>| Label {
+    let plain = |lines: &[&str], targets: Vec<Point>| Label {
         lines: lines.iter().map(|&line| line.to_owned()).collect(),
         look: Type::new(INK, LABEL, Anchor::Middle),
-        room,
+        room: Room::Any,
         targets,
     };
     let inside = shapes
@@ -354,17 +365,11 @@ fn labels(scale: &Scale, sides: &[Unit], shapes: &[Shape]) -> Vec<Label> {
     let mut labels: Vec<Label> = sides.iter().map(|side| technique(scale, side)).collect();
     labels.push(plain(
         &["computed density,", "shifted and broadened"],
-        Room::Any,
         inside,
     ));
-    labels.push(plain(
-        &["fitted model"],
-        Room::White,
-        along(scale, sides, model, true),
-    ));
+    labels.push(plain(&["fitted model"], along(scale, sides, model, true)));
     labels.push(plain(
         &["background"],
-        Room::White,
         along(scale, sides, background, false),
     ));
     labels

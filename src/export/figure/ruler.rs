@@ -6,7 +6,9 @@ use super::canvas::{Anchor, BOLD, Canvas, Stroke, Type, text_width};
 use super::frame::{Frame, LEFT, RIGHT, RULER, usable};
 use super::palette::{INK, LABEL, RULE, SOFT, TICK, TITLE};
 use super::panel_spectra::bar;
-use crate::export::words::{counted_from, energy_title, interval, typeset, value_with_interval};
+use crate::export::words::{
+    counted_from, energy_title, interval, typeset, value, value_with_interval,
+};
 use crate::quantity::Reference;
 use crate::schema::{Quantity, ResultDocument};
 
@@ -137,11 +139,7 @@ fn bracket(canvas: &mut Canvas, frame: &Frame, length: &Length) -> Result<(), Er
     } else {
         (RULER.bottom, RULER.bottom + OFF)
     };
-    let text = format!(
-        "{} {}",
-        length.name,
-        typeset(&value_with_interval(&length.gap))
-    );
+    let text = name(length);
     let bold = |anchor| Type {
         bold: true,
         ..Type::new(INK, LABEL, anchor)
@@ -167,10 +165,23 @@ fn bracket(canvas: &mut Canvas, frame: &Frame, length: &Length) -> Result<(), Er
         (first, last) = (first.min(reach(lower)), last.max(reach(upper)));
     }
     let width = text_width(&text, LABEL) * BOLD;
-    let (x, anchor) = if last + APART + width <= RIGHT {
-        (last + APART, Anchor::Start)
+    let (at, anchor) = if last + APART + width <= RIGHT {
+        ((last + APART, line), Anchor::Start)
+    } else if first - APART - width >= LEFT {
+        ((first - APART, line), Anchor::End)
     } else {
-        ((first - APART).max(LEFT + width), Anchor::End)
+        let middle = f64::midpoint(from, to).clamp(LEFT + width / 2.0, RIGHT - width / 2.0);
+        let beyond = if length.above { -APART } else { APART };
+        ((middle, line + beyond), Anchor::Middle)
     };
-    canvas.text(&text, (x, line), &bold(anchor))
+    canvas.text(&text, at, &bold(anchor))
+}
+
+/// What is written beside a bracket.
+fn name(length: &Length) -> String {
+    let value = match interval(&length.gap) {
+        Some(_) => value_with_interval(&length.gap),
+        None => format!("{} eV, ± not stated", value(&length.gap)),
+    };
+    format!("{} {}", length.name, typeset(&value))
 }

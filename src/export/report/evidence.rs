@@ -4,26 +4,24 @@ use maud::{Markup, html};
 
 use super::table::{Head, cell, table};
 use crate::export::words::{typeset, value};
-use crate::schema::{FitRecord, ProtocolEdge, ProtocolRecord, Quantity, ResultDocument, Severity};
+use crate::schema::{
+    Alternative, FitRecord, ProtocolEdge, ProtocolRecord, Quantity, ResultDocument, Severity,
+};
 
 fn shown(quantity: Option<&Quantity>) -> Markup {
     cell(quantity.map_or_else(String::new, |quantity| typeset(&value(quantity))))
 }
 
-/// Every protocol's reading.
+/// Every protocol's reading: a row for each side and one for the gap.
 pub(super) fn protocols(result: &ResultDocument) -> Markup {
     let heads = [
         Head("Protocol", false),
-        Head("Valence onset", true),
-        Head("bias", true),
-        Head("edge", true),
-        Head("Conduction onset", true),
-        Head("bias", true),
-        Head("edge", true),
-        Head("Gap", true),
-        Head("Gap of the onsets", true),
+        Head("Of", false),
+        Head("Onset, raw", true),
+        Head("Bias", true),
+        Head("Corrected", true),
     ];
-    let rows: Vec<Vec<Markup>> = result.protocols.iter().map(protocol).collect();
+    let rows: Vec<Vec<Markup>> = result.protocols.iter().flat_map(protocol).collect();
     html! {
         (table("Protocols: value ± standard uncertainty of the reading alone (eV)", &heads, &rows))
         @if !rows.is_empty() {
@@ -33,80 +31,86 @@ pub(super) fn protocols(result: &ResultDocument) -> Markup {
     }
 }
 
-fn protocol(record: &ProtocolRecord) -> Vec<Markup> {
-    let mut row = vec![html! {
+fn protocol(record: &ProtocolRecord) -> [Vec<Markup>; 3] {
+    let name = html! {
         (record.protocol)
         @if record.headline { " " small { "headline" } }
         @if record.model_dependent { " " small { "rests on the computed density" } }
-    }];
-    for edge in [&record.valence, &record.conduction] {
-        let pick = |part: fn(&ProtocolEdge) -> &Quantity| shown(edge.as_ref().map(part));
-        row.extend([
-            pick(|edge| &edge.onset),
-            pick(|edge| &edge.bias),
-            pick(|edge| &edge.edge),
-        ]);
-    }
-    row.extend([shown(record.gap.as_ref()), shown(record.onset_gap.as_ref())]);
-    row
-}
-
-/// Every fit.
-pub(super) fn fits(result: &ResultDocument) -> Markup {
-    let heads = [
-        Head("Side", false),
-        Head("Shift (eV)", true),
-        Head("Gaussian FWHM (eV)", true),
-        Head("Lorentzian FWHM (eV)", true),
-        Head("Window (eV)", true),
-        Head("Channels", true),
-        Head("Statistics", false),
-        Head("Reduced χ²", true),
-        Head("Runs test, probability", true),
-        Head("Other minima, shift (eV)", false),
-        Head("Converged", false),
-    ];
-    let rows: Vec<Vec<Markup>> = result.fits.iter().map(fit).collect();
-    table("Fits: shift is measured minus computed", &heads, &rows)
-}
-
-fn fit(fit: &FitRecord) -> Vec<Markup> {
-    let others: Vec<String> = fit
-        .alternatives
-        .iter()
-        .map(|other| {
-            format!(
-                "{:.3} (deviance +{:.1})",
-                other.shift_ev, other.deviance_above_best
-            )
-        })
-        .collect();
-    let others = if others.is_empty() {
-        "none".to_owned()
-    } else {
-        others.join("; ")
     };
-    let window = format!("{:.2} to {:.2}", fit.window_start_ev, fit.window_stop_ev);
-    vec![
-        cell(fit.side.technique()),
-        shown(Some(&fit.shift)),
-        shown(Some(&fit.gaussian_fwhm)),
-        shown(Some(&fit.lorentzian_fwhm)),
-        cell(typeset(&window)),
-        cell(format!(
-            "{} ({} free)",
-            fit.channels, fit.degrees_of_freedom
-        )),
-        cell(fit.statistics.as_str()),
-        cell(format!("{:.2}", fit.reduced_chi_square)),
-        cell(format!("{:.3}", fit.runs_probability)),
-        cell(typeset(&others)),
-        cell(format!(
-            "{}, {} evaluations",
-            if fit.converged { "yes" } else { "no" },
-            fit.evaluations
-        )),
+    let side = |of: &str, edge: Option<&ProtocolEdge>| {
+        let part = |pick: fn(&ProtocolEdge) -> &Quantity| shown(edge.map(pick));
+        let (onset, bias) = (part(|edge| &edge.onset), part(|edge| &edge.bias));
+        vec![name.clone(), cell(of), onset, bias, part(|edge| &edge.edge)]
+    };
+    let (onset_gap, gap) = (shown(record.onset_gap.as_ref()), shown(record.gap.as_ref()));
+    [
+        side("valence edge", record.valence.as_ref()),
+        side("conduction edge", record.conduction.as_ref()),
+        vec![name.clone(), cell("gap"), onset_gap, cell(""), gap],
     ]
+}
+
+/// Every fit: a column for each.
+pub(super) fn fits(result: &ResultDocument) -> Markup {
+    let sides = result
+        .fits
+        .iter()
+        .map(|fit| Head(fit.side.technique(), true));
+    let heads: Vec<Head> = std::iter::once(Head("Of the fit", false))
+        .chain(sides)
+        .collect();
+    let line = |&(name, show): &(&'static str, Show)| {
+        let cells = result.fits.iter().map(|fit| cell(show(fit)));
+        std::iter::once(cell(name)).chain(cells).collect()
+    };
+    let rows: Vec<Vec<Markup>> = LINES.iter().map(line).collect();
+    html! {
+        @if !result.fits.is_empty() { (table("Fits", &heads, &rows)) }
+    }
+}
+
+type Show = fn(&FitRecord) -> String;
+
+const LINES: [(&str, Show); 10] = [
+    ("Shift, measured minus computed (eV)", |fit| {
+        typeset(&value(&fit.shift))
+    }),
+    ("Gaussian width, FWHM (eV)", |fit| {
+        typeset(&value(&fit.gaussian_fwhm))
+    }),
+    ("Lorentzian width, FWHM (eV)", |fit| {
+        typeset(&value(&fit.lorentzian_fwhm))
+    }),
+    ("Fitted window (eV)", |fit| {
+        typeset(&format!(
+            "{:.2} to {:.2}",
+            fit.window_start_ev, fit.window_stop_ev
+        ))
+    }),
+    ("Channels; degrees of freedom", |fit| {
+        format!("{}; {}", fit.channels, fit.degrees_of_freedom)
+    }),
+    ("Statistics", |fit| fit.statistics.clone()),
+    ("Reduced chi-square", |fit| {
+        format!("{:.2}", fit.reduced_chi_square)
+    }),
+    ("Runs test, probability", |fit| {
+        format!("{:.3}", fit.runs_probability)
+    }),
+    ("Other minima: shift (eV), deviance above the best", others),
+    ("Converged; evaluations", |fit| {
+        let converged = if fit.converged { "yes" } else { "no" };
+        format!("{converged}; {}", fit.evaluations)
+    }),
+];
+
+fn others(fit: &FitRecord) -> String {
+    let other = |at: &Alternative| format!("{:.3}, {:.1}", at.shift_ev, at.deviance_above_best);
+    let others: Vec<String> = fit.alternatives.iter().map(other).collect();
+    if others.is_empty() {
+        return "none".to_owned();
+    }
+    typeset(&others.join("; "))
 }
 
 /// What the rules say of the files.

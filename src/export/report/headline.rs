@@ -53,7 +53,7 @@ pub(super) fn numbers(result: &ResultDocument) -> Markup {
     if let Some(score) = result.en_score {
         let text = typeset(&rounded(score, 0.1));
         rows.push(vec![
-            cell("E_n, difference over its expanded uncertainty"),
+            html! { "E" sub { "n" } ", difference over its expanded uncertainty" },
             cell(text),
             cell(""),
         ]);
