@@ -5,6 +5,7 @@
 //! whose `result.json` matches the hashes in it is whole.
 
 use std::collections::BTreeSet;
+use std::fmt::Write as _;
 use std::fs;
 use std::path::{Component, Path, PathBuf};
 
@@ -195,7 +196,10 @@ impl<'a> Desk<'a> {
 }
 
 fn hexadecimal(bytes: &[u8]) -> String {
-    bytes.iter().map(|byte| format!("{byte:02x}")).collect()
+    bytes.iter().fold(String::new(), |mut text, byte| {
+        let _ = write!(text, "{byte:02x}");
+        text
+    })
 }
 
 /// Gives every file its name. Old files that have no successor go before `result.json` changes.

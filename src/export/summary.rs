@@ -45,7 +45,7 @@ fn numbers(result: &ResultDocument) -> Vec<String> {
         lines.push(row("  its 95 % interval, eV", &interval_text(interval)));
     }
     if let Some(score) = result.en_score {
-        lines.push(row("E_n", &format!("{}", rounded(score, 0.1))));
+        lines.push(row("E_n", &rounded(score, 0.1)));
     }
     lines
 }

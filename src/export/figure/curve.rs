@@ -116,7 +116,9 @@ pub(super) fn stride(side: &SideCurve, frame: &Frame) -> usize {
         return 1;
     };
     let length = frame.x(last.min(frame.stop)) - frame.x(first.max(frame.start));
+    let crowd = u32::try_from(on_axis).map_or(f64::MAX, f64::from) * APART;
     (1..=on_axis)
-        .find(|&every| on_axis as f64 * APART <= length * every as f64)
-        .unwrap_or(1)
+        .zip(1_u32..)
+        .find(|&(_, every)| crowd <= length * f64::from(every))
+        .map_or(1, |(every, _)| every)
 }

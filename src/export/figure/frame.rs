@@ -139,12 +139,13 @@ fn range(curves: &Curves, valence: Option<Quantity>, conduction: Option<Quantity
     });
     let low_edge = valence.or(conduction).map(|edge| edge.value);
     let high_edge = conduction.or(valence).map(|edge| edge.value);
-    let margin = |edge: f64, by: f64| edge + by;
-    let start = low_edge.map_or(first, |edge| {
-        margin(edge, -BEYOND).max(first).min(edge - 0.5)
+    // Without data `first` is infinite, and the edge alone decides.
+    let start = low_edge.map_or(first, |edge| match edge - BEYOND {
+        wanted if first.is_finite() => wanted.max(first).min(edge - 0.5),
+        wanted => wanted,
     });
     let stop = high_edge.map_or(last, |edge| {
-        let wanted = margin(edge, BEYOND);
+        let wanted = edge + BEYOND;
         if last.is_finite() {
             wanted.min(last).max(edge + 0.5)
         } else {

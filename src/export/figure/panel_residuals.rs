@@ -87,6 +87,6 @@ fn axis(canvas: &mut Canvas, scale: &Scale) -> Result<(), Error> {
         upright: true,
         ..Type::new(INK, TITLE, Anchor::Middle)
     };
-    let middle = (RESIDUALS.top + RESIDUALS.bottom) / 2.0;
+    let middle = f64::midpoint(RESIDUALS.top, RESIDUALS.bottom);
     canvas.text("residual (σ)", (26.0, middle), &look)
 }

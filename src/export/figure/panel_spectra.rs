@@ -344,7 +344,7 @@ fn axis(canvas: &mut Canvas, scale: &Scale) -> Result<(), Error> {
         upright: true,
         ..Type::new(INK, TITLE, Anchor::Middle)
     };
-    let middle = (SPECTRA.top + SPECTRA.bottom) / 2.0;
+    let middle = f64::midpoint(SPECTRA.top, SPECTRA.bottom);
     canvas.text("intensity (each side's maximum = 1)", (26.0, middle), &look)
 }
 

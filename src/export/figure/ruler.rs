@@ -90,7 +90,7 @@ fn rule(canvas: &mut Canvas, frame: &Frame) -> Result<(), Error> {
         canvas.line((x, RULER.bottom), (x, RULER.bottom - length), stroke)?;
     }
     canvas.frame((LEFT, RULER.top), (RIGHT, RULER.bottom), ink)?;
-    let middle = (RULER.top + RULER.bottom) / 2.0;
+    let middle = f64::midpoint(RULER.top, RULER.bottom);
     let decimals = usize::from(step < 0.95);
     for tick in frame.ticks(step) {
         let value = f64::from(tick) * step;
@@ -116,7 +116,7 @@ fn titles(canvas: &mut Canvas, frame: &Frame) -> Result<(), Error> {
     };
     canvas.text(
         &title,
-        ((LEFT + RIGHT) / 2.0, Y),
+        (f64::midpoint(LEFT, RIGHT), Y),
         &Type::new(INK, TITLE, Anchor::Middle),
     )?;
     let note = "edges and gaps with 95 % intervals";
@@ -148,7 +148,7 @@ fn bracket(canvas: &mut Canvas, frame: &Frame, length: &Length) -> Result<(), Er
         .ends
         .filter(|(a, b)| frame.holds(*a) && frame.holds(*b))
     else {
-        let middle = (LEFT + RIGHT) / 2.0;
+        let middle = f64::midpoint(LEFT, RIGHT);
         return canvas.text(&text, (middle, line), &bold(Anchor::Middle));
     };
     let (from, to) = (frame.x(ends.0), frame.x(ends.1));
