@@ -101,27 +101,19 @@ impl Plan {
             fourier: vec![Complex::new(0.0, 0.0); modes + 1],
             polynomial: vec![0.0; DEGREE + 1],
         };
-        plan.add(energies, weights, 1.0);
+        plan.add(energies, weights);
         plan
     }
 
-    /// The plan of all levels but those given, which must be among its own.
-    #[must_use]
-    pub fn without(&self, energies: &[f64], weights: &[f64]) -> Self {
-        let mut plan = self.clone();
-        plan.add(energies, weights, -1.0);
-        plan
-    }
-
-    fn add(&mut self, energies: &[f64], weights: &[f64], sign: f64) {
+    fn add(&mut self, energies: &[f64], weights: &[f64]) {
         let mut moments = vec![0.0; DEGREE + 1];
         for (energy, weight) in energies.iter().zip(weights) {
             let x = energy - self.domain.centre;
             if x.abs() <= self.reach {
-                self.add_modes(x, sign * weight);
-                add_powers(&mut moments, x / self.period, sign * weight);
+                self.add_modes(x, *weight);
+                add_powers(&mut moments, x / self.period, *weight);
             } else {
-                self.add_far(x, sign * weight);
+                self.add_far(x, *weight);
             }
         }
         self.remove_images(&moments);
@@ -459,26 +451,6 @@ mod tests {
             }
         }
         assert!(worst < 1e-11, "largest error over the peak: {worst:e}");
-    }
-
-    #[test]
-    fn removing_levels_equals_never_adding_them() {
-        let (energies, weights) = levels();
-        let all = Plan::new(&energies, &weights, DOMAIN);
-        let some = all.without(&energies[100..200], &weights[100..200]);
-        let rest = [&energies[..100], &energies[200..]].concat();
-        let rest_weights = [&weights[..100], &weights[200..]].concat();
-        let want = direct_sum(&rest, &rest_weights, &grid(), 0.1, 0.05);
-        let at = Density {
-            shift: 0.0,
-            variance: 0.01,
-            gamma: 0.05,
-        };
-        let got = Sampler::new(&grid(), &some).values(&some, at).density;
-        let peak = want.iter().copied().fold(0.0, f64::max);
-        for (g, w) in got.iter().zip(&want) {
-            assert!((g - w).abs() < 1e-11 * peak);
-        }
     }
 
     #[test]

@@ -11,17 +11,22 @@
 //! by Poisson likelihood; edge = computed edge + s. The model is smooth in every parameter: bounded
 //! ones run through sines and squares, so that the solver needs no bounds.
 //!
+//! The levels stand at a finite number of k-points. A Poisson fit comes first; with C the covariance
+//! of the model that follows from their sampling (`sampling.rs`), the fit is then brought to the
+//! solution of J' V^-1 (y - mu) = 0, V = diag(mu) + C, which is the Poisson score where C is zero.
+//!
 //! The Fermi occupation is left out: it matters only where an edge lies within a few kT of the Fermi
 //! level.
 
-use nalgebra::DMatrix;
+use nalgebra::{Cholesky, DMatrix, DVector, Dyn};
 use statrs::distribution::{ContinuousCDF, Normal};
 
 use super::FWHM_PER_SIGMA;
 use super::density::{Density, Derivatives, Domain, Plan, Sampler, Values};
-use super::least_squares::{Model, Solution, covariance, minimise};
+use super::least_squares::{Model, Solution, Weighing, covariance, minimise, whiten};
 use super::misfit::{Misfit, runs_probability};
 use super::noise::Noise;
+use super::sampling::Sampled;
 use super::window::Window;
 use crate::schema::Side;
 
@@ -87,9 +92,11 @@ pub struct EdgeFit {
     pub covariance: DMatrix<f64>,
     /// Variance of the whole Gaussian, instrument included, eV^2.
     pub total_variance: f64,
-    /// Deviance of counts, chi-square otherwise.
-    pub deviance: f64,
-    /// Pearson's chi-square over the degrees of freedom.
+    /// Variance of the shift by the noise of the data alone, eV^2.
+    pub noise_variance: f64,
+    /// Influence of each group of k-points on the shift, eV; the squares add to its sampling variance.
+    pub influence: Vec<f64>,
+    /// Chi-square over the degrees of freedom, by the covariance of data and model.
     pub reduced_chi_square: f64,
     /// Probability of as large a chi-square in a right model.
     pub fit_probability: f64,
@@ -191,15 +198,6 @@ impl EdgeProblem {
         })
     }
 
-    /// The same problem without some of its levels.
-    #[must_use]
-    pub fn without(&self, energies: &[f64], weights: &[f64]) -> Self {
-        Self {
-            plan: self.plan.without(energies, weights),
-            ..self.clone()
-        }
-    }
-
     /// The energies of the window, ascending.
     #[must_use]
     pub fn energies(&self) -> &[f64] {
@@ -227,25 +225,70 @@ impl EdgeProblem {
 
     /// Fits from a guess of the amplitude and two pairs of widths; the best is kept.
     #[must_use]
-    pub fn fit(&self) -> EdgeFit {
+    pub fn fit(&self, levels: Sampled<'_>) -> EdgeFit {
         let starts = [(0.05, 0.02), (0.15, 0.1)];
         let [narrow, wide] =
             starts.map(|(sigma, gamma)| self.solve(self.start(self.options.shift, sigma, gamma)));
-        self.report(if wide.deviance < narrow.deviance {
-            &wide
-        } else {
-            &narrow
-        })
+        self.finish(
+            if wide.deviance < narrow.deviance {
+                wide
+            } else {
+                narrow
+            },
+            levels,
+        )
     }
 
     /// Fits from another fit of nearly the same problem.
     #[must_use]
-    pub fn fit_from(&self, near: &EdgeFit) -> EdgeFit {
-        self.report(&self.solve(self.internal(&near.parameters())))
+    pub fn fit_from(&self, near: &EdgeFit, levels: Sampled<'_>) -> EdgeFit {
+        self.finish(self.solve(self.internal(&near.parameters())), levels)
     }
 
     fn solve(&self, start: Vec<f64>) -> Solution {
-        minimise(self, self.misfit(), start)
+        minimise(self, Weighing::Channels(self.misfit()), start)
+    }
+
+    /// Brings a Poisson fit to the one that knows of the sampling, the covariance taken twice.
+    fn finish(&self, mut solution: Solution, levels: Sampled<'_>) -> EdgeFit {
+        let mut evaluations = solution.evaluations;
+        for _ in 0..2 {
+            let spread = self.spread(&self.natural(&solution.parameters), levels);
+            let weighing = Weighing::Correlated {
+                values: &self.values,
+                root: &spread.root,
+            };
+            solution = minimise(self, weighing, solution.parameters);
+            evaluations += solution.evaluations;
+        }
+        let spread = self.spread(&self.natural(&solution.parameters), levels);
+        EdgeFit {
+            evaluations,
+            ..self.report(&solution, &spread)
+        }
+    }
+
+    /// What data and model may be off by, at six parameters.
+    fn spread(&self, p: &[f64; PARAMETERS], levels: Sampled<'_>) -> Spread {
+        let misfit = self.misfit();
+        let model = self.model(p);
+        let variances: Vec<f64> = (0..model.len())
+            .map(|i| misfit.variance(i, model[i]))
+            .collect();
+        let deviations =
+            levels.deviations(&self.energies, self.options.side, self.density(p), p[1], p[5]);
+        let mut covariance = &deviations * deviations.transpose();
+        for (index, variance) in variances.iter().enumerate() {
+            covariance[(index, index)] += variance;
+        }
+        // Positive by its diagonal; rounding cannot change that.
+        let root = Cholesky::new_with_substitute(covariance, f64::MIN_POSITIVE.sqrt());
+        let fallback = || Cholesky::pack_dirty(DMatrix::identity(model.len(), model.len()));
+        Spread {
+            root: root.unwrap_or_else(fallback),
+            variances,
+            deviations,
+        }
     }
 
     fn start(&self, shift: f64, sigma: f64, gamma: f64) -> Vec<f64> {
@@ -366,45 +409,62 @@ impl EdgeProblem {
         (model, jacobian)
     }
 
-    fn report(&self, solution: &Solution) -> EdgeFit {
+    fn report(&self, solution: &Solution, spread: &Spread) -> EdgeFit {
         let p = self.natural(&solution.parameters);
         let (model, jacobian) = self.model_and_derivatives(&p);
-        let misfit = self.misfit();
-        let variances: Vec<f64> = (0..model.len())
-            .map(|i| misfit.variance(i, model[i]))
-            .collect();
-        let residuals = misfit.standardised(&model);
-        let chi_square: f64 = residuals.iter().map(|r| r * r).sum();
-        let dof = model.len() - PARAMETERS;
+        let weighted = whiten(&spread.root, jacobian);
+        let mut cov = covariance(&weighted);
+        let differences = model.iter().zip(&self.values).map(|(mu, value)| value - mu);
+        let rows = model.len();
+        let residuals = whiten(&spread.root, DMatrix::from_iterator(rows, 1, differences));
+        let chi_square = residuals.norm_squared();
+        let degrees_of_freedom = rows - PARAMETERS;
+        let fit_probability = self.fit_probability(chi_square, &spread.variances);
+        let runs_probability = runs_probability(residuals.as_slice());
         #[allow(clippy::cast_precision_loss)] // A number of channels.
-        let reduced_chi_square = chi_square / dof as f64;
-        let mut fit = EdgeFit {
+        let reduced_chi_square = chi_square / degrees_of_freedom as f64;
+        let gains = self.gains(&cov, &weighted, spread);
+        let inadequate = fit_probability < INADEQUATE || runs_probability < INADEQUATE;
+        let inflation = if inadequate || matches!(self.noise, Noise::Variance(_)) {
+            reduced_chi_square.max(1.0)
+        } else {
+            1.0
+        };
+        cov *= inflation;
+        let by_noise = gains.iter().zip(&spread.variances).map(|(g, v)| g * g * v);
+        EdgeFit {
             shift: p[0],
             amplitude: p[1],
             variance: p[2],
             gamma: p[3],
             constant: p[4],
             step: p[5],
-            covariance: covariance(&jacobian, &variances),
+            covariance: cov,
             total_variance: self.variance_floor + p[2],
-            deviance: solution.deviance,
+            noise_variance: by_noise.sum::<f64>() * inflation,
+            influence: (spread.deviations.tr_mul(&gains) * inflation.sqrt())
+                .as_slice()
+                .to_vec(),
             reduced_chi_square,
-            fit_probability: self.fit_probability(chi_square, &variances),
-            runs_probability: runs_probability(&residuals),
-            channels: model.len(),
-            degrees_of_freedom: dof,
+            fit_probability,
+            runs_probability,
+            channels: rows,
+            degrees_of_freedom,
             evaluations: solution.evaluations,
             converged: solution.converged,
             window: self.options.window,
-        };
-        if fit.is_inadequate() || matches!(self.noise, Noise::Variance(_)) {
-            fit.covariance *= reduced_chi_square.max(1.0);
         }
-        fit
     }
 
-    /// Probability of as large a chi-square, by the normal law with its exact mean and variance:
-    /// a Pearson residual of a Poisson count has kurtosis 3 + 1/mu.
+    /// How much the shift moves with each channel: the first row of (J'V^-1 J)^-1 J'V^-1.
+    fn gains(&self, cov: &DMatrix<f64>, weighted: &DMatrix<f64>, spread: &Spread) -> DVector<f64> {
+        let mut gains = weighted * cov.column(0);
+        spread.root.l_dirty().tr_solve_lower_triangular_mut(&mut gains);
+        gains
+    }
+
+    /// Probability of as large a chi-square, by the normal law with its exact mean and variance for
+    /// counts: a Pearson residual of a Poisson count has kurtosis 3 + 1/mu.
     fn fit_probability(&self, chi_square: f64, variances: &[f64]) -> f64 {
         let excess = |variance: &f64| match self.noise {
             Noise::Poisson => 2.0 + 1.0 / variance,
@@ -415,6 +475,16 @@ impl EdgeProblem {
         let dof = (variances.len() - PARAMETERS) as f64;
         Normal::standard().sf((chi_square - dof) / spread)
     }
+}
+
+/// What data and model may be off by.
+struct Spread {
+    /// Root of the covariance of both together.
+    root: Cholesky<f64, Dyn>,
+    /// Variances of the data.
+    variances: Vec<f64>,
+    /// Deviations of the model by group of k-points.
+    deviations: DMatrix<f64>,
 }
 
 impl Model for EdgeProblem {

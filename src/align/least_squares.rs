@@ -1,7 +1,7 @@
 //! The link to the least-squares solver: a model, a misfit and a start give a solution.
 
 use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt};
-use nalgebra::{DMatrix, DVector, Dyn, Owned};
+use nalgebra::{Cholesky, DMatrix, DVector, Dyn, Owned};
 
 use super::misfit::Misfit;
 
@@ -11,6 +11,55 @@ pub(super) trait Model {
     fn values(&self, parameters: &[f64]) -> Vec<f64>;
     /// Values, and their derivatives: one row a channel, one column a parameter.
     fn jacobian(&self, parameters: &[f64]) -> (Vec<f64>, DMatrix<f64>);
+}
+
+/// What residuals are measured in.
+#[derive(Debug, Clone, Copy)]
+pub(super) enum Weighing<'a> {
+    /// Channel by channel.
+    Channels(Misfit<'a>),
+    /// Model minus values under the inverse of a root of their covariance.
+    Correlated {
+        values: &'a [f64],
+        root: &'a Cholesky<f64, Dyn>,
+    },
+}
+
+impl Weighing<'_> {
+    fn residuals(&self, model: &[f64]) -> DVector<f64> {
+        match self {
+            Self::Channels(misfit) => {
+                let channels = model.iter().enumerate();
+                let residuals = channels.map(|(index, &mu)| misfit.residual(index, mu).0);
+                DVector::from_iterator(model.len(), residuals)
+            }
+            Self::Correlated { values, root } => {
+                let differences = model.iter().zip(*values).map(|(mu, value)| mu - value);
+                whiten(root, DMatrix::from_iterator(model.len(), 1, differences))
+                    .column(0)
+                    .into_owned()
+            }
+        }
+    }
+
+    fn jacobian(&self, model: &[f64], mut jacobian: DMatrix<f64>) -> DMatrix<f64> {
+        match self {
+            Self::Channels(misfit) => {
+                for (index, &mu) in model.iter().enumerate() {
+                    let slope = misfit.residual(index, mu).1;
+                    jacobian.row_mut(index).scale_mut(slope);
+                }
+                jacobian
+            }
+            Self::Correlated { root, .. } => whiten(root, jacobian),
+        }
+    }
+}
+
+/// The inverse of the root L of V = L L' times a matrix.
+pub(super) fn whiten(root: &Cholesky<f64, Dyn>, mut matrix: DMatrix<f64>) -> DMatrix<f64> {
+    root.l_dirty().solve_lower_triangular_mut(&mut matrix);
+    matrix
 }
 
 /// Where the solver stopped.
@@ -24,7 +73,7 @@ pub(super) struct Solution {
 
 struct Problem<'a, M> {
     model: &'a M,
-    misfit: Misfit<'a>,
+    weighing: Weighing<'a>,
     parameters: DVector<f64>,
 }
 
@@ -43,26 +92,20 @@ impl<M: Model> LeastSquaresProblem<f64, Dyn, Dyn> for Problem<'_, M> {
 
     fn residuals(&self) -> Option<DVector<f64>> {
         let model = self.model.values(self.parameters.as_slice());
-        let channels = model.iter().enumerate();
-        let residuals = channels.map(|(index, &mu)| self.misfit.residual(index, mu).0);
-        Some(DVector::from_iterator(model.len(), residuals))
+        Some(self.weighing.residuals(&model))
     }
 
     fn jacobian(&self) -> Option<DMatrix<f64>> {
-        let (model, mut jacobian) = self.model.jacobian(self.parameters.as_slice());
-        for (index, &mu) in model.iter().enumerate() {
-            let slope = self.misfit.residual(index, mu).1;
-            jacobian.row_mut(index).scale_mut(slope);
-        }
-        Some(jacobian)
+        let (model, jacobian) = self.model.jacobian(self.parameters.as_slice());
+        Some(self.weighing.jacobian(&model, jacobian))
     }
 }
 
 /// Minimises the misfit of `model` from `start`. Not converging is part of the answer.
-pub(super) fn minimise<M: Model>(model: &M, misfit: Misfit<'_>, start: Vec<f64>) -> Solution {
+pub(super) fn minimise<M: Model>(model: &M, weighing: Weighing<'_>, start: Vec<f64>) -> Solution {
     let problem = Problem {
         model,
-        misfit,
+        weighing,
         parameters: DVector::from_vec(start),
     };
     let solver = LevenbergMarquardt::new()
@@ -79,14 +122,10 @@ pub(super) fn minimise<M: Model>(model: &M, misfit: Misfit<'_>, start: Vec<f64>)
     }
 }
 
-/// Covariance of parameters from the derivatives of the model, (J' W J)^-1 with weights one over
-/// variance. A direction that the data do not bear at all is left out (pseudo-inverse).
-pub(super) fn covariance(jacobian: &DMatrix<f64>, variances: &[f64]) -> DMatrix<f64> {
-    let mut weighted = jacobian.clone();
-    for (index, variance) in variances.iter().enumerate() {
-        weighted.row_mut(index).scale_mut(variance.sqrt().recip());
-    }
-    let information = weighted.tr_mul(&weighted);
+/// Covariance of parameters from the derivatives of the weighted model, (J'J)^-1. A direction that
+/// the data do not bear at all is left out (pseudo-inverse).
+pub(super) fn covariance(weighted: &DMatrix<f64>) -> DMatrix<f64> {
+    let information = weighted.tr_mul(weighted);
     let n = information.nrows();
     let scale: Vec<f64> = (0..n)
         .map(|i| information[(i, i)].sqrt().max(f64::MIN_POSITIVE))

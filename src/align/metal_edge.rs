@@ -10,7 +10,7 @@ use nalgebra::DMatrix;
 
 use super::FWHM_PER_SIGMA;
 use super::fermi::fermi_gauss;
-use super::least_squares::{Model, covariance, minimise};
+use super::least_squares::{Model, Weighing, covariance, minimise};
 use super::misfit::Misfit;
 use super::noise::{Noise, moving_average};
 use crate::schema::Side;
@@ -107,13 +107,16 @@ pub fn fit_metal_edge(
         .map(|sigma| {
             let mut p = start;
             p[1] = sigma.ln();
-            minimise(&model, misfit, p.to_vec())
+            minimise(&model, Weighing::Channels(misfit), p.to_vec())
         })
         .min_by(|a, b| a.deviance.total_cmp(&b.deviance))?;
     let p = &solution.parameters;
-    let (mu, jacobian) = model.jacobian(p);
-    let variances: Vec<f64> = (0..mu.len()).map(|i| misfit.variance(i, mu[i])).collect();
-    let cov = covariance(&jacobian, &variances);
+    let (mu, mut jacobian) = model.jacobian(p);
+    for (index, &value) in mu.iter().enumerate() {
+        let weight = misfit.variance(index, value).sqrt().recip();
+        jacobian.row_mut(index).scale_mut(weight);
+    }
+    let cov = covariance(&jacobian);
     let residuals = misfit.standardised(&mu);
     let dof = energies.len() - p.len();
     let chi_square: f64 = residuals.iter().map(|r| r * r).sum();

@@ -9,7 +9,7 @@ use super::side::{Computed, SideResult, side};
 use super::study::{Protocol, Study};
 use super::verdict::{Grounds, en_score, verdict};
 use crate::align::{
-    Density, Domain, Plan, Sampler, jackknife_covariance, random_groups,
+    Density, Domain, Groups, Plan, Sampler,
 };
 use crate::quantity::{Reference, rounded};
 use crate::schema::{
@@ -73,8 +73,7 @@ fn sides(
     bands: &Bands,
     provenance: &mut Provenance,
 ) -> Result<Vec<SideResult>, Error> {
-    let (groups, count) = random_groups(bands.points);
-    let count = if count < 4 { 0 } else { count };
+    let groups = Groups::new(bands.points);
     let mut results = Vec::new();
     let mut problems = Vec::new();
     for input in &inputs.sides {
@@ -82,7 +81,7 @@ fn sides(
         let computed = Computed {
             levels,
             edge,
-            groups: (&groups, count),
+            groups: &groups,
         };
         let result = scale(input, provenance)
             .and_then(|scale| side(input, scale, computed, &study.comparison));
@@ -180,9 +179,7 @@ impl Comparison<'_> {
             }
             budget.add(self.protocol(side));
         }
-        if let Some(cause) = self.sampling() {
-            budget.add(cause);
-        }
+        budget.add(self.sampling());
         for (name, stated) in &self.study.computed.uncertainty {
             let basis = format!("{}:{}", stated.place.file, stated.place.line);
             let name = format!("{}, computed", name.replace('_', " "));
@@ -211,7 +208,11 @@ impl Comparison<'_> {
     }
 
     fn statistics(&self, side: &SideResult) -> Cause {
-        let u = Self::edge_of(side, self.headline()).map(|edge| edge.edge.uncertainty_or_zero());
+        let u = match self.headline() {
+            Protocol::DensityFit => Some(side.fit.noise_variance.sqrt()),
+            Protocol::Tangent => Self::edge_of(side, Protocol::Tangent)
+                .map(|edge| edge.edge.uncertainty_or_zero()),
+        };
         let degrees = f64::from(u32::try_from(side.fit.degrees_of_freedom).unwrap_or(u32::MAX));
         let basis = format!("{} of {} channels", self.headline().name(), side.fit.channels);
         let name = format!("counting statistics, {}", side.side.technique());
@@ -222,19 +223,17 @@ impl Comparison<'_> {
         }
     }
 
-    /// What two protocols differ by beyond their own uncertainties and the sampling that moves them
-    /// apart, as a rectangular distribution of that half width.
+    /// What two protocols differ by beyond their own uncertainties, as a rectangular distribution of
+    /// that half width.
     fn protocol(&self, side: &SideResult) -> Cause {
         let edges: Vec<Quantity> = side.edges.iter().map(|(_, edge)| edge.edge).collect();
-        let sampling = jackknife_covariance(&side.jackknife, &side.jackknife);
         let name = format!("protocol, {}", side.side.technique());
         let [first, second] = edges.as_slice() else {
             let basis = "one protocol only: nothing to hold it against".to_owned();
             return Cause::of_edge(name, side.side, None, basis);
         };
         let noise = first.uncertainty_or_zero().powi(2)
-            + second.uncertainty_or_zero().powi(2)
-            + if side.jackknife.is_empty() { 0.0 } else { sampling };
+            + second.uncertainty_or_zero().powi(2);
         let excess = ((first.value - second.value).powi(2) - noise).max(0.0);
         let basis = format!(
             "protocols differ by {:.3} eV, {:.3} eV expected of noise",
@@ -245,32 +244,29 @@ impl Comparison<'_> {
     }
 
     /// Sampling of the Brillouin zone, jointly for both edges.
-    fn sampling(&self) -> Option<Cause> {
-        let of = |side: Side| self.side(side).map_or(&[][..], |result| &result.jackknife);
+    fn sampling(&self) -> Cause {
+        let name = "sampling of the Brillouin zone".to_owned();
+        let of = |side: Side| self.side(side).map_or(&[][..], |result| &result.fit.influence);
         let (valence, conduction) = (of(Side::Valence), of(Side::Conduction));
         let groups = valence.len().max(conduction.len());
-        let name = "sampling of the Brillouin zone".to_owned();
         if groups == 0 {
             let basis = "not known: the table names fewer than four k-points".to_owned();
-            return Some(Cause::of_computed_gap(name, None, basis));
+            return Cause::of_computed_gap(name, None, basis);
         }
-        let variance = |list: &[f64]| {
-            if list.is_empty() {
-                0.0
-            } else {
-                jackknife_covariance(list, list)
-            }
+        let at = |list: &[f64], group: usize| list.get(group).copied().unwrap_or(0.0);
+        let norm = |part: &dyn Fn(usize) -> f64| -> f64 {
+            (0..groups).map(|g| part(g).powi(2)).sum::<f64>().sqrt()
         };
-        let (v, c) = (variance(valence), variance(conduction));
-        let shared = if valence.len() == conduction.len() {
-            jackknife_covariance(valence, conduction)
-        } else {
-            0.0
-        };
-        let basis = format!("jackknife over {groups} groups of k-points");
+        let basis = format!("influence of {groups} k-points or groups of them, as drawn at random");
         let degrees = f64::from(u32::try_from(groups - 1).unwrap_or(u32::MAX));
-        let gap = (v + c - 2.0 * shared).max(0.0).sqrt();
-        Some(Cause::of_both_edges(name, v.sqrt(), c.sqrt(), gap, basis).by_statistics(degrees))
+        Cause::of_both_edges(
+            name,
+            norm(&|g| at(valence, g)),
+            norm(&|g| at(conduction, g)),
+            norm(&|g| at(conduction, g) - at(valence, g)),
+            basis,
+        )
+        .by_statistics(degrees)
     }
 
     fn protocols(&self) -> Vec<ProtocolRecord> {

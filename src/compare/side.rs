@@ -7,8 +7,8 @@ use super::inputs::SideInput;
 use super::scale::{Curve, Scale};
 use super::study::{ComparisonSection, Protocol};
 use crate::align::{
-    Alignment, EdgeFit, EdgeFitOptions, EdgeProblem, FWHM_PER_SIGMA, Instrument, Misfit, Noise,
-    ReplicaBias, Tangent, TangentOptions, Window, scan, tangent, tangent_bias, voigt_fwhm,
+    Alignment, EdgeFit, EdgeFitOptions, EdgeProblem, FWHM_PER_SIGMA, Groups, Instrument, Misfit,
+    Noise, ReplicaBias, Sampled, Tangent, TangentOptions, Window, scan, tangent, tangent_bias, voigt_fwhm,
 };
 use crate::parse::{Problem, Role};
 use crate::schema::{ProtocolEdge, Quantity, Side};
@@ -32,8 +32,6 @@ pub(super) struct SideResult {
     pub fit: EdgeFit,
     pub alignment: Alignment,
     pub edges: Vec<(Protocol, ProtocolEdge)>,
-    /// The shift without each group of k-points.
-    pub jackknife: Vec<f64>,
     pub causes: Vec<Cause>,
 }
 
@@ -42,8 +40,7 @@ pub(super) struct SideResult {
 pub(super) struct Computed<'a> {
     pub levels: &'a SideLevels,
     pub edge: f64,
-    /// Group of each k-point, and the number of groups.
-    pub groups: (&'a [usize], usize),
+    pub groups: &'a Groups,
 }
 
 /// Fits one side.
@@ -68,7 +65,6 @@ pub(super) fn side(
     };
     let alignment = fitter.scan(instrument)?;
     let (problem, fit) = fitter.fit(alignment.shift + computed.edge, instrument)?;
-    let jackknife = fitter.jackknife(&problem, &fit);
     let edges = fitter.edges(&problem, &fit);
     let causes = fitter.causes(&scale, &fit, instrument);
     Ok(SideResult {
@@ -77,7 +73,6 @@ pub(super) fn side(
         fit,
         alignment,
         edges,
-        jackknife,
         causes,
         curve,
         scale,
@@ -183,26 +178,22 @@ impl Fitter<'_> {
     /// Fits in a window about a guess of the edge, then once more about the edge that was found.
     fn fit(&self, guess: f64, instrument: Instrument) -> Result<(EdgeProblem, EdgeFit), Problem> {
         let window = self.window(guess, instrument, (1.0, 1.0));
-        let first = self.problem(guess, window, instrument)?.fit();
+        let first = self.problem(guess, window, instrument)?.fit(self.sampled());
         let edge = self.computed.edge + first.shift;
         let window = self.window(edge, instrument, (1.0, 1.0));
         let problem = self.problem(edge, window, instrument)?;
-        let fit = problem.fit_from(&first);
+        let fit = problem.fit_from(&first, self.sampled());
         Ok((problem, fit))
     }
 
-    /// The shift without each group of k-points in turn.
-    fn jackknife(&self, problem: &EdgeProblem, fit: &EdgeFit) -> Vec<f64> {
-        let (groups, count) = self.computed.groups;
+    fn sampled(&self) -> Sampled<'_> {
         let levels = self.computed.levels;
-        (0..count)
-            .map(|group| {
-                let rows = (0..levels.points.len()).filter(|&r| groups[levels.points[r]] == group);
-                let (energies, weights): (Vec<f64>, Vec<f64>) =
-                    rows.map(|r| (levels.energies[r], levels.weights[r])).unzip();
-                problem.without(&energies, &weights).fit_from(fit).shift
-            })
-            .collect()
+        Sampled {
+            energies: &levels.energies,
+            weights: &levels.weights,
+            points: &levels.points,
+            groups: self.computed.groups,
+        }
     }
 
     /// The edge by each protocol of the study.
@@ -300,7 +291,7 @@ impl Fitter<'_> {
             };
             let window = self.window(edge, instrument, (1.0, 1.0));
             let problem = self.problem(edge, window, moved);
-            problem.map_or(fit.shift, |problem| problem.fit_from(fit).shift)
+            problem.map_or(fit.shift, |problem| problem.fit_from(fit, self.sampled()).shift)
         };
         let half = 0.5 * (shift(1.0) - shift(-1.0));
         let basis = format!("refitted with {:.4} eV more and less", uncertainty * FWHM_PER_SIGMA);
@@ -317,7 +308,8 @@ impl Fitter<'_> {
             .into_iter()
             .filter_map(|factors| {
                 let window = self.window(edge, instrument, factors);
-                let other = self.problem(edge, window, instrument).ok()?.fit_from(fit);
+                let problem = self.problem(edge, window, instrument).ok()?;
+                let other = problem.fit_from(fit, self.sampled());
                 let explained = (other.shift_uncertainty().powi(2) - variance).abs();
                 Some(((other.shift - fit.shift).powi(2) - explained).max(0.0))
             })

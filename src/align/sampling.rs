@@ -1,0 +1,197 @@
+//! Sampling of the Brillouin zone: what a table of few k-points leaves open in its density.
+//!
+//! The model of channel j is a sum over k-points, `mu_j` = sum_k `c_jk`. Had other k-points been drawn,
+//! it would differ; with points drawn at random the covariance of the model is estimated by
+//!
+//!   C = N/(N - 1) sum_k d_k d_k',   d_k = c_k - (w_k / sum w) mu,
+//!
+//! (the jackknife of a weighted sum, in its infinitesimal form; Efron and Tibshirani, An Introduction
+//! to the Bootstrap (1993), chapter 11). Any estimate that is linear in the data by weights g then
+//! carries the influence g'd_k of each k-point, whose squares add to its sampling variance; two
+//! estimates from the same k-points share them. A regular grid does better than random points, so
+//! for it the estimate errs on the large side.
+
+use nalgebra::DMatrix;
+use rand::SeedableRng;
+use rand::seq::SliceRandom;
+use rand_chacha::ChaCha8Rng;
+
+use super::density::Density;
+use super::voigt::voigt;
+use crate::schema::Side;
+
+/// Most groups that k-points are dealt into; beyond, several share a group.
+const GROUPS: usize = 1_000;
+/// Levels farther than this many widths from a window are left out of its sampling, which they
+/// reach by smooth tails only.
+const REACH: f64 = 6.0;
+
+/// The groups of k-points of a table, the same for every use.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct Groups {
+    /// The group of each k-point.
+    group: Vec<usize>,
+    /// Number of groups; zero where the table names too few k-points.
+    count: usize,
+}
+
+impl Groups {
+    /// Deals `points` k-points into groups: one each, or nearly equal shares after a shuffle with a
+    /// fixed seed. Fewer than four points make no groups.
+    #[must_use]
+    pub fn new(points: usize) -> Self {
+        if points < 4 {
+            return Self::default();
+        }
+        let count = GROUPS.min(points);
+        let mut order: Vec<usize> = (0..points).collect();
+        if count < points {
+            order.shuffle(&mut ChaCha8Rng::seed_from_u64(0x6b_706f_696e_7473));
+        }
+        let mut group = vec![0; points];
+        for (position, point) in order.into_iter().enumerate() {
+            group[point] = position % count;
+        }
+        Self { group, count }
+    }
+
+    /// Number of groups.
+    #[must_use]
+    pub fn count(&self) -> usize {
+        self.count
+    }
+}
+
+/// Levels of one side with the k-points they belong to.
+#[derive(Debug, Clone, Copy)]
+pub struct Sampled<'a> {
+    /// Energies.
+    pub energies: &'a [f64],
+    /// Weights of their k-points.
+    pub weights: &'a [f64],
+    /// Number of their k-points, from 0; may be empty where there are no groups.
+    pub points: &'a [usize],
+    /// The groups.
+    pub groups: &'a Groups,
+}
+
+impl Sampled<'_> {
+    /// The deviations `d_k` of the broadened density plus `step` times its integral from the gap end,
+    /// times `amplitude`, at ascending `channels`: one row a channel, one column a group; no columns
+    /// where there are no groups. Cost: one Faddeeva function a level near the window and a channel.
+    #[must_use]
+    pub fn deviations(
+        &self,
+        channels: &[f64],
+        side: Side,
+        at: Density,
+        amplitude: f64,
+        step: f64,
+    ) -> DMatrix<f64> {
+        let count = self.groups.count;
+        let mut parts = DMatrix::zeros(channels.len(), count);
+        let (Some(first), Some(last)) = (channels.first(), channels.last()) else {
+            return parts;
+        };
+        if count == 0 {
+            return parts;
+        }
+        let mut weights = vec![0.0; count];
+        let sigma = at.variance.sqrt();
+        let reach = REACH * (sigma + at.gamma);
+        for (row, &level) in self.energies.iter().enumerate() {
+            let group = self.groups.group[self.points[row]];
+            let weight = self.weights[row];
+            weights[group] += weight;
+            let energy = level + at.shift;
+            if energy < first - reach || energy > last + reach {
+                continue;
+            }
+            let mut column = parts.column_mut(group);
+            for (value, channel) in column.iter_mut().zip(channels) {
+                *value += weight * voigt(channel - energy, sigma, at.gamma);
+            }
+        }
+        for mut column in parts.column_iter_mut() {
+            add_step(column.as_mut_slice(), channels, side, step);
+        }
+        centre(&mut parts, &weights);
+        parts * amplitude
+    }
+}
+
+/// Adds `step` times the integral from the gap end, by trapezoids.
+fn add_step(values: &mut [f64], channels: &[f64], side: Side, step: f64) {
+    let n = values.len();
+    let order: Vec<usize> = match side {
+        Side::Valence => (0..n).rev().collect(),
+        Side::Conduction => (0..n).collect(),
+    };
+    let mut integral = 0.0;
+    let mut last: Option<(f64, f64)> = None;
+    for index in order {
+        let (here, value) = (channels[index], values[index]);
+        if let Some((before, old)) = last {
+            integral += 0.5 * (old + value) * (here - before).abs();
+        }
+        last = Some((here, value));
+        values[index] += step * integral;
+    }
+}
+
+/// Takes from each group its share of the sum, and scales for the degree of freedom that costs.
+fn centre(parts: &mut DMatrix<f64>, weights: &[f64]) {
+    let total: f64 = weights.iter().sum();
+    let sum = parts.column_sum();
+    let count = f64::from(u32::try_from(weights.len()).unwrap_or(u32::MAX));
+    let scale = (count / (count - 1.0)).sqrt();
+    for (mut column, weight) in parts.column_iter_mut().zip(weights) {
+        column.axpy(-weight / total, &sum, 1.0);
+        column *= scale;
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// The sampling variance of a density at one energy, against the spread over many tables.
+    #[test]
+    fn deviations_give_the_spread_over_tables() {
+        use rand::Rng;
+        let mut rng = ChaCha8Rng::seed_from_u64(9);
+        let at = Density {
+            shift: 0.0,
+            variance: 0.04,
+            gamma: 0.02,
+        };
+        let channels = [-0.5, 0.0, 0.5];
+        let groups = Groups::new(200);
+        let points: Vec<usize> = (0..200).collect();
+        let weights = vec![1.0; 200];
+        let (mut sum, mut squares, mut claimed) = (0.0, 0.0, 0.0);
+        let tables = 300u16;
+        for _ in 0..tables {
+            let energies: Vec<f64> = (0..200).map(|_| rng.random_range(-2.0..2.0)).collect();
+            let sampled = Sampled {
+                energies: &energies,
+                weights: &weights,
+                points: &points,
+                groups: &groups,
+            };
+            let deviations = sampled.deviations(&channels, Side::Valence, at, 1.0, 0.1);
+            claimed += deviations.row(1).norm_squared();
+            let density: Vec<f64> = channels
+                .iter()
+                .map(|c| energies.iter().map(|e| voigt(c - e, 0.2, 0.02)).sum())
+                .collect();
+            let value = density[1] + 0.1 * 0.25 * (density[1] + density[2]);
+            sum += value;
+            squares += value * value;
+        }
+        let n = f64::from(tables);
+        let spread = squares / n - (sum / n).powi(2);
+        // The channels are few, so the trapezoid is coarse, but it is the same on both sides.
+        assert!((claimed / n / spread - 1.0).abs() < 0.25, "{} {spread}", claimed / n);
+    }
+}
