@@ -3,5 +3,6 @@
 #![forbid(unsafe_code)]
 #![deny(missing_docs)]
 
+pub mod parse;
 pub mod quantity;
 pub mod schema;
