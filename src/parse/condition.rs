@@ -5,7 +5,7 @@ use super::quantity_text::{
     energy_text, linear_energy_text, potential_text, temperature_text, time_text,
 };
 use super::role::Kind;
-use crate::quantity::{AxisKind, EnergyUnit, Reference};
+use crate::quantity::{AxisKind, Energy, EnergyUnit, Reference, Temperature};
 use crate::schema::{Computation, Conditions};
 
 /// A key that comment lines are read for.
@@ -179,7 +179,7 @@ pub(super) fn read(key: ConditionKey, value: &str, unit: Option<&str>) -> Result
         }
         _ => without_remark(value).to_owned(),
     };
-    let ev = |energy: Result<crate::quantity::Energy, String>| energy.map(|e| e.electronvolts());
+    let ev = |energy: Result<Energy, String>| energy.map(Energy::electronvolts);
     let number = match key {
         Key::PhotonEnergy => ev(energy_text(&text)),
         Key::AnalyserWorkFunction
@@ -188,7 +188,7 @@ pub(super) fn read(key: ConditionKey, value: &str, unit: Option<&str>) -> Result
         | Key::PassEnergy => ev(linear_energy_text(&text)),
         Key::SampleBias => potential_text(&text),
         Key::Temperature | Key::LatticeTemperature => {
-            temperature_text(&text).map(crate::quantity::Temperature::kelvin)
+            temperature_text(&text).map(Temperature::kelvin)
         }
         Key::Dwell => time_text(&text),
         Key::Sweeps => sweeps(&text),

@@ -73,13 +73,11 @@ pub(super) fn split(
     cells: &mut Vec<Cell>,
 ) -> Result<(), Unquotable> {
     cells.clear();
-    match delimiter.byte() {
-        Some(byte) => split_at(line.as_bytes(), base, byte, cells),
-        None => {
-            split_blanks(line.as_bytes(), base, cells);
-            Ok(())
-        }
+    if let Some(byte) = delimiter.byte() {
+        return split_at(line.as_bytes(), base, byte, cells);
     }
+    split_blanks(line.as_bytes(), base, cells);
+    Ok(())
 }
 
 fn is_blank(byte: u8) -> bool {

@@ -61,7 +61,9 @@ fn contradiction<T: Display>(what: &str, one: Evidence<T>, other: Evidence<T>) -
         .into_iter()
         .filter_map(|(place, says)| place.map(|place| (place, says)));
     problem.place = places.next().map(|(place, _)| place);
-    problem.related = places.collect();
+    problem.related = places
+        .filter(|(place, _)| problem.place.as_ref() != Some(place))
+        .collect();
     problem
 }
 

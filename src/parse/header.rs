@@ -47,6 +47,7 @@ pub(super) fn read(cell: &str, kind: Kind) -> Reading {
     for part in parts {
         match part {
             Part::Text(text) => name.push_str(text),
+            Part::Unit(text) if text.trim().is_empty() => name.push(' '),
             Part::Unit(text) => reading.units.push(text.trim().to_owned()),
             Part::Group(text) => group(text, kind, &mut name, &mut reading),
         }
@@ -97,9 +98,11 @@ fn group(text: &str, kind: Kind, name: &mut String, reading: &mut Reading) {
         let known = words::words(piece)
             .iter()
             .all(|word| words::tag(word, kind).is_some());
+        if matches!(piece, "" | "E" | "k" | "ε") {
+            continue;
+        }
         if is_unit(piece) {
             reading.units.push(piece.to_owned());
-        } else if matches!(piece, "" | "E" | "k" | "ε") {
         } else if let Some((_, _, reference)) = zero {
             reading.reference = Some(reference);
         } else if known {
@@ -144,8 +147,11 @@ fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
 /// The name without a unit at its end: ` in eV`, `_eV`, ` eV`.
 fn without_unit<'a>(name: &'a str, units: &mut Vec<String>) -> &'a str {
     if let Some((head, unit)) = name.rsplit_once(" in ") {
-        units.push(unit.trim().to_owned());
-        return head.trim();
+        let unit = unit.trim();
+        if is_unit(unit) || !unit.contains(' ') {
+            units.push(unit.to_owned());
+            return head.trim();
+        }
     }
     match name.rsplit_once(['_', ' ']) {
         Some((head, unit)) if is_suffix_unit(unit) && !head.trim().is_empty() => {
@@ -219,22 +225,14 @@ const LEVELS: [Form; 11] = [
     (Role::Weight, Tag::Weight, &[Tag::K]),
     (Role::Band, Tag::Band, &[]),
     (Role::Spin, Tag::Spin, &[]),
-    (
-        Role::EnergyMeanField,
-        Tag::MeanField,
-        &[Tag::Energy, Tag::Band],
-    ),
+    (Role::EnergyMeanField, Tag::MeanField, &[Tag::Energy]),
     (
         Role::EnergyQuasiparticle,
         Tag::Quasiparticle,
-        &[Tag::Energy, Tag::Band],
+        &[Tag::Energy],
     ),
-    (
-        Role::Occupation,
-        Tag::Occupation,
-        &[Tag::MeanField, Tag::Quasiparticle, Tag::Band],
-    ),
-    (Role::Energy, Tag::Energy, &[Tag::Band]),
+    (Role::Occupation, Tag::Occupation, &[]),
+    (Role::Energy, Tag::Energy, &[]),
 ];
 
 const SPECTRUM: [Form; 8] = [
@@ -305,7 +303,7 @@ mod tests {
                 "E_KS|KS|DFT energy|eKS (eV)|E_HF|mean field energy|E-MF|mean-field eigenvalue|E_PBE in eV|energy (DFT) [eV]",
             ),
             (Energy, "E|energy (eV)|eigenvalue|eig|band energy|ε"),
-            (Occupation, "occ|f|occupation number|Occupation|occ. KS"),
+            (Occupation, "occ|f|occupation number|Occupation"),
             (Weight, "w|wtk|weight|k-point weight|wk"),
             (KIndex, "k|ik|kpt|k index|k-point|kpoint index|K_POINT|iK"),
             (KX, "kx|k1|k_x (1/bohr)|kx / (2pi/a)|k_1"),
@@ -323,6 +321,7 @@ mod tests {
     fn names_that_are_not_said_in_full_have_no_role() {
         for cell in [
             "E_QP - E_KS",
+            "occ KS",
             "QP correction (eV)",
             "E_F",
             "Ef",

@@ -96,11 +96,8 @@ fn holds_names(names: &[Name], kind: Kind, hints: &Hints) -> bool {
             .values()
             .any(|choice| matches!(choice, ColumnChoice::Header(text) if *text == name.text))
     };
-    let numbers = names.iter().any(|name| number(&name.text).is_some());
-    let named = names
-        .iter()
-        .any(|name| kind == Kind::Any || name.reading.role.is_some() || chosen(name));
-    named && !numbers
+    let known = |name: &Name| kind == Kind::Any || name.reading.role.is_some() || chosen(name);
+    names.iter().any(known) && !names.iter().any(|name| number(&name.text).is_some())
 }
 
 fn names(source: &Source, cells: &[Cell], kind: Kind) -> Vec<Name> {

@@ -43,9 +43,11 @@ impl Layout {
         let mut sample = Vec::new();
         for line in source.lines_from(0) {
             let text = source.slice(line.start..line.end);
+            if text.trim().is_empty() {
+                continue;
+            }
             if let Some(comment) = comment(text) {
                 layout.comments.push(line.start + comment..line.end);
-            } else if text.trim().is_empty() {
             } else if layout.rows == 0 && !dialect::looks_numeric(text) {
                 layout.bare.push(line.start..line.end);
             } else {

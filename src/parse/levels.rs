@@ -83,11 +83,9 @@ fn read(
 
 fn no_energy(source: &Source, table: &Table, bare: Option<usize>, hints: &Hints) -> Problem {
     let which = |column: usize| {
-        format!(
-            "{} or {}",
-            hints.setting(&format!("column.energy-mean-field = {column}")),
-            hints.setting(&format!("column.energy-quasiparticle = {column}"))
-        )
+        hints.setting(&format!(
+            "column.energy-mean-field = {column}` or `column.energy-quasiparticle = {column}"
+        ))
     };
     match bare {
         Some(field) => Problem::new(format!(

@@ -61,7 +61,7 @@ pub(super) fn read(
                 value: text[value].trim().to_owned(),
                 place: source.place(span),
             };
-            if let Err(problem) = metadata.statement(statement, kind) {
+            if let Err(problem) = metadata.statement(&statement, kind) {
                 problems.push(problem);
             }
         }
@@ -107,15 +107,20 @@ impl Metadata {
         format!("the comment on line {}", place.line)
     }
 
-    fn statement(&mut self, statement: Statement, kind: Kind) -> Result<(), Problem> {
+    fn statement(&mut self, statement: &Statement, kind: Kind) -> Result<(), Problem> {
         let index = self.statements.len();
         self.statements.push(statement.clone());
         if let Some(unit) = unit_key(&statement.key) {
-            return self.units(unit, &statement);
+            return self.units(unit, statement);
         }
         let Some((key, unit)) = condition::recognise(&statement.key, kind) else {
             return Ok(());
         };
+        if key == ConditionKey::Reference && statement.value.contains(|c: char| c.is_ascii_digit())
+        {
+            // A reference to the literature, which names no zero.
+            return Ok(());
+        }
         let value = condition::read(key, &statement.value, unit.as_deref()).map_err(|why| {
             Problem::new(format!("`{}`: {why}", statement.key))
                 .at(statement.place.clone())
@@ -132,7 +137,7 @@ impl Metadata {
                 self.references
                     .push(Evidence::at(*reference, says, statement.place.clone()));
             }
-            _ => self.same_as_before(key, &value, &statement)?,
+            _ => self.same_as_before(key, &value, statement)?,
         }
         self.known.push((key, value, index));
         Ok(())
@@ -289,7 +294,7 @@ mod tests {
     fn prose_trips_nothing() {
         let text = "invented data: see README\nmade on 2020-01-01 12:30\nE_F = 5\nangular resolution: 0.1 deg\n\
                     resolution sigma: 5\nenergies, as the reader knows, vary\ntime: now\nwork function of the sample: unknown\n\
-                    energy is conserved\nhttps://example.org\n=\n:\n";
+                    energy is conserved\nhttps://example.org\nreference: J. Inv. Sci. 12, 3 (2001)\n=\n:\n";
         let (metadata, problems) = of(text, Kind::Spectrum);
         assert_eq!(problems, []);
         assert_eq!(metadata.known, []);
@@ -337,16 +342,29 @@ mod tests {
     #[test]
     fn known_keys_with_bad_values_are_located() {
         let (_, problems) = of("photon energy: 21.218\n", Kind::Spectrum);
-        insta::assert_snapshot!(problems[0], @"");
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `photon energy`: expected an energy with its unit (eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K), such as `21.218 eV`, and found `21.218` without a unit
+      help: correct the line; one that does not begin with this key is not read
+    ");
         let (_, problems) = of(
             "T: 300 K\nhv: 1 eV\nsample temperature: 80 K\n",
             Kind::Spectrum,
         );
-        insta::assert_snapshot!(problems[0], @"");
+        insta::assert_snapshot!(problems[0], @r"
+    t:3:1: `sample temperature` is `80 K` here and `300 K` on line 1
+      t:1:1: the other value
+      help: keep the line that is true
+    ");
         let (_, problems) = of("units: keV\n", Kind::Levels);
-        insta::assert_snapshot!(problems[0], @"");
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `units`: `keV` is not the spelling of a unit
+      help: energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm or K; intensities in counts, counts/s or arb. u.
+    ");
         let (_, problems) = of("axis: sideways\n", Kind::Spectrum);
-        insta::assert_snapshot!(problems[0], @"");
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `axis`: expected kinetic, binding, final-state or photon, and found `sideways`
+      help: correct the line; one that does not begin with this key is not read
+    ");
         assert_eq!(of("T: 300 K\nT = 300.0 K", Kind::Spectrum).1, []);
     }
 }

@@ -7,7 +7,7 @@ use super::condition::ConditionKey;
 use super::evidence::Evidence;
 use super::layout::Layout;
 use super::metadata::Statement;
-use super::role::{ColumnChoice, Hints, Role};
+use super::role::{Hints, Role};
 use super::table::Table;
 use super::{Place, Source};
 use crate::schema::{Locate, Provenance};
@@ -141,12 +141,10 @@ fn evidence(
     role: Option<Role>,
     unit: Option<&(String, String)>,
 ) -> String {
-    let header = table.says(source, index);
-    let says = match role.and_then(|role| Some((role, hints.columns.get(&role)?))) {
-        Some((role, ColumnChoice::Number(_) | ColumnChoice::Header(_))) => {
-            hints.says(&format!("column.{role}"))
-        }
-        None => header,
+    let chosen = role.filter(|role| hints.columns.contains_key(role));
+    let says = match chosen {
+        Some(role) => hints.says(&format!("column.{role}")),
+        None => table.says(source, index),
     };
     match unit {
         Some((unit, by)) if *by != says => format!("{says}; {unit} by {by}"),

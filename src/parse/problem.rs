@@ -2,7 +2,7 @@
 
 use std::fmt;
 
-use annotate_snippets::{AnnotationKind, Level, Origin, Renderer, Snippet};
+use annotate_snippets::{AnnotationKind, Element, Level, Origin, Renderer, Snippet};
 
 use super::Place;
 
@@ -83,9 +83,20 @@ impl std::error::Error for Problem {}
 pub fn render(problem: &Problem) -> String {
     let mut group = Level::ERROR
         .primary_title(&problem.message)
-        .elements(problem.place.iter().flat_map(|place| excerpt_of(place, "")));
+        .elements(Vec::<Element<'_>>::new());
+    let mut apart: Vec<(&Place, &str)> = Vec::new();
+    let mut beside: Vec<(&Place, &str)> = Vec::new();
     for (place, label) in &problem.related {
-        group = group.elements(excerpt_of(place, label));
+        let same = problem.place.as_ref().is_some_and(|main| {
+            (&main.file, main.line, &main.excerpt) == (&place.file, place.line, &place.excerpt)
+        });
+        if same { &mut beside } else { &mut apart }.push((place, label));
+    }
+    if let Some(place) = &problem.place {
+        group = group.elements(excerpt_of(place, "", &beside));
+    }
+    for (place, label) in apart {
+        group = group.elements(excerpt_of(place, label, &[]));
     }
     if let Some(help) = &problem.help {
         group = group.element(Level::HELP.message(help));
@@ -93,33 +104,36 @@ pub fn render(problem: &Problem) -> String {
     Renderer::plain().render(&[group])
 }
 
-/// The origin and the one-line snippet of a place. The origin is given apart from the snippet
-/// because the column counts in the whole line and the excerpt may be cut.
-fn excerpt_of<'a>(place: &'a Place, label: &'a str) -> [annotate_snippets::Element<'a>; 2] {
-    let byte = |chars: usize| {
-        place
-            .excerpt
-            .char_indices()
-            .nth(chars)
-            .map_or(place.excerpt.len(), |(at, _)| at)
+/// The one-line snippet of a place and of others in the same line. Where the line is cut, its origin
+/// is given apart, because the renderer would count the column in the excerpt.
+fn excerpt_of<'a>(
+    place: &'a Place,
+    label: &'a str,
+    beside: &[(&'a Place, &'a str)],
+) -> Vec<Element<'a>> {
+    let mark = |kind: AnnotationKind, place: &'a Place, label: &'a str| {
+        kind.span(byte(place, place.highlight.start)..byte(place, place.highlight.end))
+            .label((!label.is_empty()).then_some(label))
     };
-    let span = byte(place.highlight.start)..byte(place.highlight.end);
-    let mark = AnnotationKind::Primary.span(span);
-    let mark = if label.is_empty() {
-        mark
-    } else {
-        mark.label(label)
-    };
-    [
-        Origin::path(&place.file)
-            .line(place.line)
-            .char_column(place.column)
-            .into(),
-        Snippet::source(&place.excerpt)
-            .line_start(place.line)
-            .annotation(mark)
-            .into(),
-    ]
+    let snippet = Snippet::source(&place.excerpt)
+        .line_start(place.line)
+        .annotation(mark(AnnotationKind::Primary, place, label))
+        .annotations(
+            beside
+                .iter()
+                .map(|&(place, label)| mark(AnnotationKind::Context, place, label)),
+        );
+    if place.column == place.highlight.start + 1 {
+        return vec![snippet.path(&place.file).into()];
+    }
+    let origin = Origin::path(&place.file).line(place.line);
+    vec![origin.char_column(place.column).into(), snippet.into()]
+}
+
+/// The byte of the excerpt at which a character starts.
+fn byte(place: &Place, character: usize) -> usize {
+    let mut starts = place.excerpt.char_indices().map(|(at, _)| at);
+    starts.nth(character).unwrap_or(place.excerpt.len())
 }
 
 /// Collects problems up to a number worth reading, and counts the rest.
@@ -177,8 +191,38 @@ mod tests {
             .at(source.place(17..21))
             .with_related(source.place(8..14), "the column")
             .with_help("write a number");
-        insta::assert_snapshot!(render(&problem), @"");
-        insta::assert_snapshot!(problem, @"");
+        insta::assert_snapshot!(render(&problem), @r"
+    error: expected a number and found text
+     --> a.csv:2:3
+      |
+    2 | 1,µ x
+      |   ^^^
+      |
+     ::: a.csv:1:9
+      |
+    1 | E (eV), counts
+      |         ^^^^^^ the column
+      |
+      = help: write a number
+    ");
+        let beside = Problem::new("two")
+            .at(source.place(0..6))
+            .with_related(source.place(8..14), "b");
+        insta::assert_snapshot!(render(&beside), @r"
+    error: two
+     --> a.csv:1:1
+      |
+    1 | E (eV), counts
+      | ^^^^^^  ------ b
+    ");
+        let long = Source::from_text("b", &"x".repeat(300));
+        let cut = Problem::new("cut").at(long.place(200..201));
+        assert!(render(&cut).contains("b:1:201"), "{}", render(&cut));
+        insta::assert_snapshot!(problem, @r"
+    a.csv:2:3: expected a number and found text
+      a.csv:1:9: the column
+      help: write a number
+    ");
     }
 
     #[test]

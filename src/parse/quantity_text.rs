@@ -111,6 +111,11 @@ fn with_unit<T>(
             "expected {expected}, and found `{text}` without a unit"
         ));
     }
+    if unit.starts_with(',') {
+        return Err(format!(
+            "expected {expected}, with a point for the decimal mark, and found `{text}`"
+        ));
+    }
     match read(unit) {
         Some(read) => Ok((value, read)),
         None => Err(format!("expected {expected}, and found the unit `{unit}`")),
@@ -166,9 +171,9 @@ mod tests {
     #[test]
     fn refusals_say_what_was_expected_and_found() {
         let refused = |text| energy_text(text).map(|_| ()).unwrap_err();
-        insta::assert_snapshot!(refused("21.218"), @"");
-        insta::assert_snapshot!(refused("21,218 eV"), @"");
-        insta::assert_snapshot!(refused("0 nm"), @"");
+        insta::assert_snapshot!(refused("21.218"), @"expected an energy with its unit (eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K), such as `21.218 eV`, and found `21.218` without a unit");
+        insta::assert_snapshot!(refused("21,218 eV"), @"expected an energy with its unit (eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K), such as `21.218 eV`, with a point for the decimal mark, and found `21,218 eV`");
+        insta::assert_snapshot!(refused("0 nm"), @"expected a wavelength above zero and found `0 nm`");
         for text in [
             "", "eV", "nan eV", "inf eV", "1e999 eV", "5 keV", "5 mev", "5 eV 6",
         ] {

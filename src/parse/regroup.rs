@@ -9,6 +9,8 @@ use crate::quantity::{EnergyUnit, IntensityUnit};
 
 /// Words that one name may have.
 const LONGEST_NAME: usize = 6;
+/// Words beyond which a line is prose, and the ways to group it are not searched.
+const MOST_ATOMS: usize = 60;
 
 /// Why a line could not be grouped into the wanted number of cells.
 #[derive(Debug, PartialEq)]
@@ -40,6 +42,9 @@ pub(super) fn regroup(
         };
     }
     let found = atoms.len();
+    if found > MOST_ATOMS {
+        return Err(Ungrouped::Count(found));
+    }
     let mut ways = ways(line, &atoms, wanted, kind);
     match (ways.pop(), ways.pop()) {
         (Some(only), None) => Ok(only),
@@ -139,6 +144,9 @@ fn ways(line: &str, atoms: &[Range<usize>], wanted: usize, kind: Kind) -> Vec<Ve
             }
             for to in from + 1..=atoms.len().min(from + LONGEST_NAME) {
                 let span = atoms[from].start..atoms[to - 1].end;
+                if starts_late(&line[span.clone()]) {
+                    continue;
+                }
                 if to > from + 1 && !is_name(line, atoms, from..to, kind) {
                     continue;
                 }
@@ -161,8 +169,9 @@ fn is_name(line: &str, atoms: &[Range<usize>], joined: Range<usize>, kind: Kind)
     let text = &line[atoms[joined.start].start..atoms[joined.end - 1].end];
     let unit_inside = atoms[joined.start..joined.end - 1]
         .iter()
-        .any(|atom| line[atom.clone()].contains(['(', '[', '/']));
-    !unit_inside && !starts_late(text) && header::read(text, kind).role.is_some()
+        .map(|atom| &line[atom.clone()])
+        .any(|atom| atom.contains(['(', '[', '/']) || atom.contains(" in "));
+    !unit_inside && header::read(text, kind).role.is_some()
 }
 
 /// Whether the text starts with a word that only ever follows the name it belongs to.
@@ -252,6 +261,12 @@ mod tests {
             ),
             ("a b", 3, Kind::Levels, "count 2"),
             ("some words here now", 2, Kind::Levels, "count 4"),
+            (
+                "k occ GW energy / eV",
+                3,
+                Kind::Levels,
+                "k|occ|GW energy / eV",
+            ),
             // KS may belong to either energy.
             ("energy KS energy", 2, Kind::Levels, "ambiguous"),
         ] {

@@ -143,6 +143,18 @@ impl Kind {
         }
     }
 
+    /// Whether a unit may be given for a role in such a table.
+    pub fn has_unit(self, role: Role) -> bool {
+        match self {
+            Self::Levels => matches!(
+                role,
+                Role::Energy | Role::EnergyMeanField | Role::EnergyQuasiparticle
+            ),
+            Self::Spectrum => self.roles().contains(&role),
+            Self::Any => false,
+        }
+    }
+
     /// Such a table in words.
     pub fn in_words(self) -> &'static str {
         match self {

@@ -12,6 +12,9 @@ use super::problem::Problems;
 use super::role::{ColumnChoice, Hints, Kind, Role};
 use super::{Place, Problem, Source};
 
+/// How many columns a message lists.
+const LISTED: usize = 20;
+
 /// The lines, names and comments of a table, and which field has which role.
 #[derive(Debug)]
 pub(super) struct Table {
@@ -55,8 +58,13 @@ impl Table {
             metadata,
             fields: BTreeMap::new(),
         };
+        for &role in hints.units.keys().filter(|role| !kind.has_unit(**role)) {
+            let says = hints.says(&format!("unit.{role}"));
+            let what = kind.in_words();
+            problems.push(Problem::new(format!("{says}: {what} has no such unit")));
+        }
         table.choose(source, kind, hints, problems);
-        table.claim(source, hints, problems);
+        table.claim(source, kind, hints, problems);
         Some(table)
     }
 
@@ -123,7 +131,7 @@ impl Table {
     }
 
     /// Gives the columns whose header says what they are their roles, where nobody else has them.
-    fn claim(&mut self, source: &Source, hints: &Hints, problems: &mut Problems) {
+    fn claim(&mut self, source: &Source, kind: Kind, hints: &Hints, problems: &mut Problems) {
         let mut claims = BTreeMap::<Role, Vec<usize>>::new();
         for (field, name) in self.names.iter().enumerate() {
             let free = !self.fields.values().any(|&chosen| chosen == field);
@@ -135,8 +143,10 @@ impl Table {
             if self.fields.contains_key(&role) {
                 continue;
             }
-            if let [first, second, ..] = claimants[..] {
-                problems.push(self.rivals(source, role, [first, second], hints));
+            // An energy of unsaid kind is no role of levels: what it means is the reader's question.
+            let is_role = kind.roles().contains(&role);
+            if let ([first, second, ..], true) = (&claimants[..], is_role) {
+                problems.push(self.rivals(source, role, [*first, *second], hints));
             }
             self.fields.insert(role, claimants[0]);
         }
@@ -168,8 +178,10 @@ impl Table {
         let list: Vec<String> = self
             .names
             .iter()
+            .take(LISTED)
             .enumerate()
             .map(|(field, name)| format!("{} `{}`", field + 1, name.text))
+            .chain((self.names.len() > LISTED).then(|| "…".to_owned()))
             .collect();
         let message = format!("{}; the columns are {}", problem.message, list.join(", "));
         Problem { message, ..problem }.at(self.place_of(source, 0))
@@ -253,7 +265,7 @@ fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Pro
         help.push_str(&hints.setting(settings));
     }
     let problem = Problem::new(format!(
-        "no header says what the {} columns before line {} are",
+        "no header says what the {} columns from line {} on are",
         layout.fields,
         source.place(first.clone()).line
     ))

@@ -63,9 +63,15 @@ fn levels_with_everything() {
         .iter()
         .map(|step| format!("{}: {}", step.action, step.detail))
         .collect();
-    insta::assert_snapshot!(steps.join("\n"), @"");
+    insta::assert_snapshot!(steps.join("\n"), @r"
+    read: 2 rows of 11 fields separated by commas; names on line 5
+    convert: column 8 (energy-mean-field) from Ha to eV: the header cell `E_KS` on line 5; Ha by the comment on line 2
+    convert: column 9 (energy-quasiparticle) from Ha to eV: the header cell `E_QP (Ha)` on line 5
+    leave out: column 11 `Z`: not a name that is known here
+    reference: fermi by the comment on line 2
+    ");
     let place = parsed.place_of(0, Role::EnergyQuasiparticle).unwrap();
-    assert_eq!((place.line, place.column), (6, 25));
+    assert_eq!((place.line, place.column), (6, 24));
     let place = parsed.header_place(Role::KIndex).unwrap();
     assert_eq!((place.line, place.column), (5, 1));
     assert_eq!(
@@ -100,7 +106,7 @@ fn curve_with_conditions() {
     assert_eq!(conditions.dwell_s, Some(0.5));
     assert_eq!(conditions.sweeps, Some(4.0));
     assert_eq!(conditions.technique.as_deref(), Some("UPS"));
-    insta::assert_snapshot!(parsed.columns[2].evidence, @"");
+    insta::assert_snapshot!(parsed.columns[2].evidence, @"the header cell `sigma` on line 10; counts by the intensities, by the header cell `counts` on line 10");
 }
 
 #[test]
@@ -153,44 +159,124 @@ fn user_may_name_columns() {
     // A damaged first row is not passed over as a header.
     assert!(levels("1,x,y,z\n2,-3.5,3,4\n", &nameless).is_err());
     assert!(levels(text, &by(ColumnChoice::Number(4))).is_err());
+    // Two energies of unsaid kind beside one that says it are left out.
+    let parsed = levels("E (eV),E (eV),E_QP (eV)\n-1,-2,-3\n", &hints()).unwrap();
+    assert_eq!(parsed.document.energy_quasiparticle_ev, Some(vec![-3.0]));
     assert!(levels(text, &by(ColumnChoice::Header("E".into()))).is_err());
 }
 
 #[test]
 fn refusals_of_levels() {
-    insta::assert_snapshot!(refused("k,E (eV)\n1,-5.5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP\n1,-5.5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV),GW (eV)\n1,-5.5,2\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,foo\n1,-5.5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("1,-5.5\n2,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("# k index\n1,-5.5\n2,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k;E_QP (eV)\n1;-5,5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5.5\n2,-5,5\n3,-5.5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5,5\n2,-5,5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1.5,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("# energies in Ha\nk,E_QP (eV)\n1,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV) [Ha]\n1,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (keV)\n1,-5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (nm)\n1,5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("energy KS energy\n1 5\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,*****\n", &hints()), @"");
-    insta::assert_snapshot!(refused("k,\"E_QP (eV)\n1,2\n", &hints()), @"");
+    insta::assert_snapshot!(refused("k,E (eV)\n1,-5.5\n", &hints()), @r"
+    levels.csv:1:3: column 2 `E (eV)` is an energy, but nothing says whether mean-field or quasiparticle
+      help: name it, as in `E_KS (eV)` or `E_QP (eV)`, or write `column.energy-mean-field = 2` or `column.energy-quasiparticle = 2` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused("k,E_QP\n1,-5.5\n", &hints()), @r#"
+    levels.csv:1:3: nothing says the unit of column 2 `E_QP`, read as energy-quasiparticle
+      help: write it in the header, or as `unit.energy-quasiparticle = "eV"` under [computed] in study.toml; energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K
+    "#);
+    insta::assert_snapshot!(refused("k,E_QP (eV),GW (eV)\n1,-5.5,2\n", &hints()), @r"
+    levels.csv:1:3: columns 2 `E_QP (eV)` and 3 `GW (eV)` both read as energy-quasiparticle
+      levels.csv:1:13: the other column
+      help: say which one is meant, as in `column.energy-quasiparticle = 2` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused("k,foo\n1,-5.5\n", &hints()), @r"
+    levels.csv:1:1: no column is known to hold energies; the columns are 1 `k`, 2 `foo`
+      help: say which one does, as in `column.energy-mean-field = 1` or `column.energy-quasiparticle = 1` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused("1,-5.5\n2,-5\n", &hints()), @r"
+    levels.csv:1:1: no header says what the 2 columns from line 1 on are
+      help: write a line of names above the numbers, as in `k,band,E_KS (eV),E_QP (eV)`, or name the columns by number: `column.energy-quasiparticle = 4` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused("# k index\n1,-5.5\n2,-5\n", &hints()), @r"
+    levels.csv:2:1: no header says what the 2 columns from line 2 on are
+      levels.csv:1:3: this comment does not have one known name for each column
+      help: write a line of names above the numbers, as in `k,band,E_KS (eV),E_QP (eV)`, or name the columns by number: `column.energy-quasiparticle = 4` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused("k;E_QP (eV)\n1;-5,5\n", &hints()), @r"
+    levels.csv:2:3: expected a number in column `E_QP (eV)` and found `-5,5`
+      help: decimal commas are not read: write points in the whole file
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5.5\n2,-5,5\n3,-5.5\n", &hints()), @r"
+    levels.csv:3:6: expected 2 fields separated by commas, as in most rows, and found 3
+      help: if commas are decimal marks here, write points
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5,5\n2,-5,5\n", &hints()), @r"
+    levels.csv:1:1: the header has 2 cells, but the rows have 3 fields separated by commas
+      help: give every column one name, and separate names by two blanks or more where a name has blanks in it; where commas are decimal marks, write points
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1.5,-5\n", &hints()), @"levels.csv:2:1: expected a whole number in column `k` and found `1.5`");
+    insta::assert_snapshot!(refused("# energies in Ha\nk,E_QP (eV)\n1,-5\n", &hints()), @r"
+    levels.csv:2:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV)` on line 2, and as Ha by the comment on line 1
+      levels.csv:1:3: the comment on line 1
+      help: find out which one is true and remove or correct the other
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (eV) [Ha]\n1,-5\n", &hints()), @r"
+    levels.csv:1:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV) [Ha]` on line 1, and as Ha by the header cell `E_QP (eV) [Ha]` on line 1
+      help: find out which one is true and remove or correct the other
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (keV)\n1,-5\n", &hints()), @r"
+    levels.csv:1:3: `keV` in the header cell `E_QP (keV)` on line 1 is not the spelling of a unit for it
+      help: energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K; a remark goes elsewhere than in the brackets of a unit
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (nm)\n1,5\n", &hints()), @"levels.csv:1:3: column 2 is given in nm by the header cell `E_QP (nm)` on line 1, but only photon energies are given by a wavelength");
+    insta::assert_snapshot!(refused("energy KS energy\n1 5\n", &hints()), @r"
+    levels.csv:1:1: the header can be read in more than one way as 2 columns: energy | KS energy or energy KS | energy
+      help: separate the names by two blanks or more, or by commas
+    ");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,*****\n", &hints()), @r"
+    levels.csv:2:3: expected a number in column `E_QP (eV)` and found `*****`
+      help: the program that wrote the file had no room for this number
+    ");
+    insta::assert_snapshot!(refused("k,\"E_QP (eV)\n1,2\n", &hints()), @"levels.csv:1:3: a quoted cell does not end on its line");
     let unit = Hints {
         units: [(Role::EnergyQuasiparticle, "Ha".into())].into(),
         ..hints()
     };
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5\n", &unit), @"");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5\n", &unit), @r"
+    levels.csv:1:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV)` on line 1, and as Ha by unit.energy-quasiparticle under [computed] in study.toml
+      help: find out which one is true and remove or correct the other
+    ");
+    let unit = Hints {
+        units: [(Role::Band, "eV".into())].into(),
+        ..hints()
+    };
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5\n", &unit), @"unit.band under [computed] in study.toml: a table of levels has no such unit");
 }
 
 #[test]
 fn refusals_of_curves() {
-    insta::assert_snapshot!(refused_curve("Energy (eV),counts\n1,2\n"), @"");
-    insta::assert_snapshot!(refused_curve("Kinetic energy (eV),Intensity\n1,2\n"), @"");
-    insta::assert_snapshot!(refused_curve("Kinetic energy (eV),Counts (arb. u.)\n1,2\n"), @"");
-    insta::assert_snapshot!(refused_curve("KE (eV),BE (eV),counts\n1,2,3\n"), @"");
-    insta::assert_snapshot!(refused_curve("KE (eV),counts,sigma (cps)\n1,2,3\n"), @"");
-    insta::assert_snapshot!(refused_curve("# reference: vacuum\nE - E_F (eV),counts\n1,2\n"), @"");
-    insta::assert_snapshot!(refused_curve("# nothing here\n"), @"");
+    insta::assert_snapshot!(refused_curve("Energy (eV),counts\n1,2\n"), @r#"
+    curve.txt:1:1: nothing says what the energies in column 1 `Energy (eV)` are counted along: kinetic, binding, final-state or photon
+      help: name it in the header, as in `Kinetic energy (eV)`, or write `axis = "kinetic"` under [computed] in study.toml
+    "#);
+    insta::assert_snapshot!(refused_curve("Kinetic energy (eV),Intensity\n1,2\n"), @r#"
+    curve.txt:1:21: nothing says the unit of column 2 `Intensity`, read as intensity
+      help: write it in the header, or as `unit.intensity = "counts"` under [computed] in study.toml; intensities are in counts, counts/s or arb. u.
+    "#);
+    insta::assert_snapshot!(refused_curve("Kinetic energy (eV),Counts (arb. u.)\n1,2\n"), @r"
+    curve.txt:1:21: the unit of intensity is given as arb. u. by the header cell `Counts (arb. u.)` on line 1, and as counts by the header cell `Counts (arb. u.)` on line 1
+      help: find out which one is true and remove or correct the other
+    ");
+    insta::assert_snapshot!(refused_curve("KE (eV),BE (eV),counts\n1,2,3\n"), @r"
+    curve.txt:1:1: columns 1 `KE (eV)` and 2 `BE (eV)` both read as energy
+      curve.txt:1:9: the other column
+      help: say which one is meant, as in `column.energy = 1` under [computed] in study.toml
+    ");
+    insta::assert_snapshot!(refused_curve("KE (eV),counts,sigma (cps)\n1,2,3\n"), @r"
+    curve.txt:1:16: the unit of the intensities and of their uncertainties is given as counts/s by the header cell `sigma (cps)` on line 1, and as counts by the intensities, by the header cell `counts` on line 1
+      curve.txt:1:9: the intensities, by the header cell `counts` on line 1
+      help: find out which one is true and remove or correct the other
+    ");
+    insta::assert_snapshot!(refused_curve("# reference: vacuum\nE - E_F (eV),counts\n1,2\n"), @r"
+    curve.txt:2:1: the zero of the energies is given as fermi by the header cell `E - E_F (eV)` on line 2, and as vacuum by the comment on line 1
+      curve.txt:1:3: the comment on line 1
+      help: find out which one is true and remove or correct the other
+    ");
+    insta::assert_snapshot!(refused_curve("# nothing here\n"), @r"
+    there are no rows of numbers in `curve.txt`
+      help: expected lines of numbers separated by commas, semicolons, tabs or blanks, under a line of column names
+    ");
 }
 
 #[test]

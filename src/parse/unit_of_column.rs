@@ -46,7 +46,7 @@ impl Units<'_> {
         let comments = self.table.metadata.intensity_units.clone();
         let role = Role::Intensity;
         self.unit(role, field, IntensityUnit::from_spelling, named, comments)?
-            .ok_or_else(|| self.missing(role, field, "counts\" or \"counts/s\" or \"arb. u."))
+            .ok_or_else(|| self.missing(role, field, "counts"))
     }
 
     /// The unit of the uncertainties, which is that of the intensities where it is not given.
@@ -125,7 +125,10 @@ impl Units<'_> {
             self.table.says(self.source, field)
         ))
         .at(self.table.place_of(self.source, field))
-        .with_help(spellings(role.map_or(Role::Energy, |(&role, _)| role)))
+        .with_help(format!(
+            "{}; a remark goes elsewhere than in the brackets of a unit",
+            spellings(role.map_or(Role::Energy, |(&role, _)| role))
+        ))
     }
 
     fn missing(&self, role: Role, field: usize, example: &str) -> Problem {
@@ -136,8 +139,9 @@ impl Units<'_> {
         ))
         .at(self.table.place_of(self.source, field));
         problem.with_help(format!(
-            "write it in the header, or as {}",
-            self.hints.setting(&format!("unit.{role} = \"{example}\""))
+            "write it in the header, or as {}; {}",
+            self.hints.setting(&format!("unit.{role} = \"{example}\"")),
+            spellings(role)
         ))
     }
 }

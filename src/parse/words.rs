@@ -80,6 +80,7 @@ fn joined_word(pair: &str) -> Option<&'static str> {
         "quasi particle" => "quasiparticle",
         "final state" => "finalstate",
         "photon energy" | "h nu" | "h ν" | "h v" => "photon",
+        "band energy" | "band energies" => "energy",
         "e b" => "eb",
         "k x" | "k 1" => "kx",
         "k y" | "k 2" => "ky",
