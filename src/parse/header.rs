@@ -1,0 +1,459 @@
+//! The grammar of one header cell: `cell = name (unit | zero | argument)*`, where a unit stands in
+//! brackets, after `/`, after ` in `, or as the last piece (`E_QP_eV`), and a zero is written as a
+//! difference (`E - E_F`) or in words (`relative to vacuum`).
+
+use nom::branch::alt;
+use nom::bytes::complete::{take_till, take_till1};
+use nom::character::complete::char;
+use nom::combinator::map;
+use nom::multi::many0;
+use nom::sequence::{delimited, preceded};
+use nom::{IResult, Parser};
+
+use super::role::{Kind, Role};
+use super::words::{self, Relation, Tag};
+use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit, Reference};
+
+/// What a header cell says.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub(super) struct Reading {
+    /// What the column is; `None` where the cell does not say it in the trade's words.
+    pub role: Option<Role>,
+    /// What its energies are counted along.
+    pub axis: Option<AxisKind>,
+    /// What they are counted from.
+    pub reference: Option<Reference>,
+    /// Every unit that the cell gives, readable or not.
+    pub units: Vec<String>,
+    /// Whether the name itself says that the column holds counts.
+    pub counts: bool,
+}
+
+/// Reads a header cell of a table of `kind`.
+pub(super) fn read(cell: &str, kind: Kind) -> Reading {
+    let cell = plain(cell);
+    if kind == Kind::Spectrum && IntensityUnit::from_spelling(&cell).is_some() {
+        return Reading {
+            role: Some(Role::Intensity),
+            units: vec![cell],
+            ..Reading::default()
+        };
+    }
+    let Ok(("", parts)) = parts(&cell) else {
+        return Reading::default();
+    };
+    let mut reading = Reading::default();
+    let mut name = String::new();
+    for part in parts {
+        match part {
+            Part::Text(text) => name.push_str(text),
+            Part::Unit(text) if text.trim().is_empty() => name.push(' '),
+            Part::Unit(text) => reading.units.push(text.trim().to_owned()),
+            Part::Group(text) => group(text, kind, &mut name, &mut reading),
+        }
+    }
+    read_name(&name, kind, &mut reading);
+    reading
+}
+
+/// The cell with typographic signs in their plain form.
+fn plain(cell: &str) -> String {
+    cell.chars()
+        .filter(|c| !matches!(c, '$' | '\\' | '{' | '}'))
+        .map(|c| match c {
+            '−' | '–' | '⁻' => '-',
+            '\t' | '\u{a0}' => ' ',
+            other => other,
+        })
+        .collect::<String>()
+        .trim()
+        .to_owned()
+}
+
+#[derive(Debug, Clone, Copy)]
+enum Part<'a> {
+    Text(&'a str),
+    Group(&'a str),
+    Unit(&'a str),
+}
+
+fn parts(cell: &str) -> IResult<&str, Vec<Part<'_>>> {
+    let opens = |c: char| matches!(c, '(' | '[');
+    let round = delimited(char('('), take_till(|c| c == ')'), char(')'));
+    let square = delimited(char('['), take_till(|c| c == ']'), char(']'));
+    many0(alt((
+        map(round, Part::Group),
+        map(square, Part::Group),
+        map(preceded(char('/'), take_till1(opens)), Part::Unit),
+        map(char('/'), |_| Part::Text(" ")),
+        map(take_till1(move |c| c == '/' || opens(c)), Part::Text),
+    )))
+    .parse(cell)
+}
+
+/// What stands in brackets: units and zeros separated by commas, an argument, or more of the name.
+fn group(text: &str, kind: Kind, name: &mut String, reading: &mut Reading) {
+    for piece in text.split([',', ';']).map(str::trim) {
+        let zero = words::relation(piece).filter(|(before, ..)| before.is_empty());
+        let known = words::words(piece)
+            .iter()
+            .all(|word| words::tag(word, kind).is_some());
+        if matches!(piece, "" | "E" | "k" | "ε") {
+            continue;
+        }
+        if is_unit(piece) {
+            reading.units.push(piece.to_owned());
+        } else if let Some((_, _, reference)) = zero {
+            reading.reference = Some(reference);
+        } else if known {
+            name.push(' ');
+            name.push_str(piece);
+        } else {
+            reading.units.push(piece.to_owned());
+        }
+    }
+    name.push(' ');
+}
+
+fn is_unit(text: &str) -> bool {
+    EnergyUnit::from_spelling(text).is_some() || IntensityUnit::from_spelling(text).is_some()
+}
+
+fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
+    let name = without_unit(name.trim(), &mut reading.units);
+    let Some((name, direction)) = zero(name, reading) else {
+        return;
+    };
+    let Some(tags) = tags(name, kind) else {
+        return;
+    };
+    reading.role = role(&tags, kind);
+    reading.counts = reading.role == Some(Role::Intensity)
+        && tags.contains(&Tag::Counts)
+        && !tags.contains(&Tag::Rate);
+    if reading.role == Some(Role::Energy) {
+        reading.axis = axis(&tags).or(match direction {
+            Some(Relation::Above) => Some(AxisKind::FinalState),
+            Some(Relation::Below) => Some(AxisKind::Binding),
+            _ => None,
+        });
+    }
+    if direction == Some(Relation::Below) && kind == Kind::Levels {
+        // Counted downwards: a level is counted upwards, so this is no energy of a level.
+        reading.role = None;
+    }
+}
+
+/// The name without a unit at its end: ` in eV`, `_eV`, ` eV`.
+fn without_unit<'a>(name: &'a str, units: &mut Vec<String>) -> &'a str {
+    if let Some((head, unit)) = name.rsplit_once(" in ") {
+        let unit = unit.trim();
+        if is_unit(unit) || !unit.contains(' ') {
+            units.push(unit.to_owned());
+            return head.trim();
+        }
+    }
+    match name.rsplit_once(['_', ' ']) {
+        Some((head, unit)) if is_suffix_unit(unit) && !head.trim().is_empty() => {
+            units.push(unit.to_owned());
+            head.trim_end_matches(['_', ' '])
+        }
+        _ => name,
+    }
+}
+
+/// Whether the last piece of a name is a unit. `K` is not (`E_K`), nor is `counts`, which is a name.
+/// `mev` and `kev` are, so that they are refused as units rather than overlooked.
+fn is_suffix_unit(piece: &str) -> bool {
+    let intensity = IntensityUnit::from_spelling(piece);
+    (EnergyUnit::from_spelling(piece).is_some() && piece != "K")
+        || intensity.is_some_and(|unit| unit != IntensityUnit::Counts)
+        || matches!(piece.to_ascii_lowercase().as_str(), "mev" | "kev")
+}
+
+/// The name without its zero, and the direction it counts in; `None` where nothing else is left.
+fn zero<'a>(name: &'a str, reading: &mut Reading) -> Option<(&'a str, Option<Relation>)> {
+    if let Some((before, relation, reference)) = words::relation(name) {
+        reading.reference = Some(reference);
+        return (!before.is_empty()).then_some((before, Some(relation)));
+    }
+    for (at, _) in name.match_indices('-') {
+        let (left, right) = (name[..at].trim(), name[at + 1..].trim());
+        if left.is_empty() || right.is_empty() {
+            continue;
+        }
+        if let Some(reference) = words::reference(right) {
+            reading.reference = Some(reference);
+            return Some((left, Some(Relation::Above)));
+        }
+        let symbol = left.starts_with(['E', 'e', 'ε']);
+        if let (true, Some(reference), "E" | "e" | "ε") = (symbol, words::reference(left), right) {
+            reading.reference = Some(reference);
+            return Some((right, Some(Relation::Below)));
+        }
+    }
+    Some((name, None))
+}
+
+/// What the words of a name say; `None` where a word is not one of the trade's. After `@` stands
+/// the starting point of a quasiparticle energy.
+fn tags(name: &str, kind: Kind) -> Option<Vec<Tag>> {
+    let read = |name: &str| -> Option<Vec<Tag>> {
+        words::words(name)
+            .iter()
+            .map(|word| words::tag(word, kind))
+            .collect()
+    };
+    match name.split_once('@') {
+        Some((head, start)) => {
+            let head = read(head)?;
+            let known = read(start)?.iter().all(|&tag| tag == Tag::MeanField);
+            (known && head.contains(&Tag::Quasiparticle)).then_some(head)
+        }
+        None => read(name),
+    }
+}
+
+/// A form of name: the role, the word it needs, and the words it may have beside it.
+type Form = (Role, Tag, &'static [Tag]);
+
+const LEVELS: [Form; 11] = [
+    (Role::KIndex, Tag::K, &[]),
+    (Role::KX, Tag::KX, &[]),
+    (Role::KY, Tag::KY, &[]),
+    (Role::KZ, Tag::KZ, &[]),
+    (Role::Weight, Tag::Weight, &[Tag::K]),
+    (Role::Band, Tag::Band, &[]),
+    (Role::Spin, Tag::Spin, &[]),
+    (Role::EnergyMeanField, Tag::MeanField, &[Tag::Energy]),
+    (
+        Role::EnergyQuasiparticle,
+        Tag::Quasiparticle,
+        &[Tag::Energy],
+    ),
+    (Role::Occupation, Tag::Occupation, &[]),
+    (Role::Energy, Tag::Energy, &[]),
+];
+
+const SPECTRUM: [Form; 8] = [
+    (Role::Energy, Tag::Energy, &[]),
+    (Role::Energy, Tag::Kinetic, &[Tag::Energy]),
+    (Role::Energy, Tag::Binding, &[Tag::Energy]),
+    (Role::Energy, Tag::FinalState, &[Tag::Energy]),
+    (Role::Energy, Tag::Photon, &[Tag::Energy]),
+    (Role::Intensity, Tag::Intensity, &[Tag::Counts, Tag::Rate]),
+    (Role::Intensity, Tag::Counts, &[Tag::Rate]),
+    (
+        Role::StandardUncertainty,
+        Tag::Uncertainty,
+        &[Tag::Intensity, Tag::Counts],
+    ),
+];
+
+fn role(tags: &[Tag], kind: Kind) -> Option<Role> {
+    let forms: &[Form] = match kind {
+        Kind::Levels => &LEVELS,
+        Kind::Spectrum => &SPECTRUM,
+        Kind::Any => &[],
+    };
+    let fits = |&&(_, needed, beside): &&Form| {
+        tags.contains(&needed)
+            && tags
+                .iter()
+                .all(|tag| *tag == needed || *tag == Tag::Plain || beside.contains(tag))
+    };
+    forms.iter().find(fits).map(|&(role, ..)| role)
+}
+
+fn axis(tags: &[Tag]) -> Option<AxisKind> {
+    tags.iter().find_map(|tag| match tag {
+        Tag::Kinetic => Some(AxisKind::Kinetic),
+        Tag::Binding => Some(AxisKind::Binding),
+        Tag::FinalState => Some(AxisKind::FinalState),
+        Tag::Photon => Some(AxisKind::Photon),
+        _ => None,
+    })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn levels(cell: &str) -> Reading {
+        read(cell, Kind::Levels)
+    }
+
+    fn spectrum(cell: &str) -> Reading {
+        read(cell, Kind::Spectrum)
+    }
+
+    #[test]
+    fn names_of_levels() {
+        use Role::{
+            Band, Energy, EnergyMeanField, EnergyQuasiparticle, KIndex, KX, KZ, Occupation, Spin,
+            Weight,
+        };
+        for (role, cells) in [
+            (
+                EnergyQuasiparticle,
+                "E_QP|E_qp (eV)|Eqp|GW|G0W0 energy [Ha]|quasiparticle energy / eV|quasi-particle|e.qp|E_GW@PBE|QP_energy_eV|ε_{QP}|eps QP",
+            ),
+            (
+                EnergyMeanField,
+                "E_KS|KS|DFT energy|eKS (eV)|E_HF|mean field energy|E-MF|mean-field eigenvalue|E_PBE in eV|energy (DFT) [eV]",
+            ),
+            (Energy, "E|energy (eV)|eigenvalue|eig|band energy|ε"),
+            (Occupation, "occ|f|occupation number|Occupation"),
+            (Weight, "w|wtk|weight|k-point weight|wk"),
+            (KIndex, "k|ik|kpt|k index|k-point|kpoint index|K_POINT|iK"),
+            (KX, "kx|k1|k_x (1/bohr)|kx / (2pi/a)|k_1"),
+            (KZ, "kz|k3"),
+            (Band, "band|n|ib|nband|band index|Band"),
+            (Spin, "spin|is|ispin|spin channel|spin index"),
+        ] {
+            for cell in cells.split('|') {
+                assert_eq!(levels(cell).role, Some(role), "{cell}");
+            }
+        }
+    }
+
+    #[test]
+    fn names_that_are_not_said_in_full_have_no_role() {
+        for cell in [
+            "E_QP - E_KS",
+            "occ KS",
+            "QP correction (eV)",
+            "E_F",
+            "Ef",
+            "E_K",
+            "binding energy (eV)",
+            "E_F - E",
+            "E below E_F",
+            "foo",
+            "",
+            "Z",
+            "sigma_x (eV)",
+            "E_QP (eV",
+            "E QP raw",
+            "gap",
+        ] {
+            assert_eq!(levels(cell).role, None, "{cell}");
+        }
+        for cell in [
+            "E loss (eV)",
+            "E_k (eV)",
+            "energy uncertainty",
+            "temperature",
+            "normalised intensity",
+        ] {
+            assert_eq!(spectrum(cell).role, None, "{cell}");
+        }
+    }
+
+    #[test]
+    fn axes_and_zeros_of_curves() {
+        use AxisKind::{Binding, FinalState, Kinetic, Photon};
+        let fermi = Some(Reference::Fermi);
+        for (cell, axis, reference) in [
+            ("Kinetic energy / eV", Some(Kinetic), None),
+            ("E_kin (eV)", Some(Kinetic), None),
+            ("Ekin", Some(Kinetic), None),
+            ("KE [eV]", Some(Kinetic), None),
+            ("E_k,kin (eV)", None, None),
+            ("BE (eV)", Some(Binding), None),
+            ("E_B (eV)", Some(Binding), None),
+            ("E_F - E (eV)", Some(Binding), fermi),
+            ("E - E_F (eV)", Some(FinalState), fermi),
+            ("E-EF", Some(FinalState), fermi),
+            ("E−E_F / eV", Some(FinalState), fermi),
+            (
+                "E − E_VBM (eV)",
+                Some(FinalState),
+                Some(Reference::ValenceEdge),
+            ),
+            ("energy above Fermi level (eV)", Some(FinalState), fermi),
+            ("final state energy", Some(FinalState), None),
+            ("Energy relative to E_F (eV)", None, fermi),
+            ("Binding energy (eV, wrt E_F)", Some(Binding), fermi),
+            (
+                "kinetic energy wrt vacuum",
+                Some(Kinetic),
+                Some(Reference::Vacuum),
+            ),
+            ("photon energy (eV)", Some(Photon), None),
+            ("wavelength (nm)", Some(Photon), None),
+            ("Energy (eV)", None, None),
+        ] {
+            let reading = spectrum(cell);
+            assert_eq!(
+                (reading.axis, reading.reference),
+                (axis, reference),
+                "{cell}"
+            );
+        }
+        assert_eq!(
+            levels("E_QP - E_VBM (eV)").reference,
+            Some(Reference::ValenceEdge)
+        );
+        assert_eq!(
+            levels("E_QP - E_VBM (eV)").role,
+            Some(Role::EnergyQuasiparticle)
+        );
+    }
+
+    #[test]
+    fn names_of_intensities() {
+        for cell in [
+            "Intensity",
+            "counts",
+            "Counts/s",
+            "cps",
+            "N(E)",
+            "N",
+            "I (arb. u.)",
+            "signal",
+            "count rate (1/s)",
+            "arb. u.",
+        ] {
+            assert_eq!(spectrum(cell).role, Some(Role::Intensity), "{cell}");
+        }
+        for cell in [
+            "sigma",
+            "u(I)",
+            "standard uncertainty",
+            "std",
+            "σ (counts)",
+            "error",
+        ] {
+            assert_eq!(
+                spectrum(cell).role,
+                Some(Role::StandardUncertainty),
+                "{cell}"
+            );
+        }
+        assert!(spectrum("electron counts").counts);
+        assert!(!spectrum("count rate").counts);
+    }
+
+    #[test]
+    fn units() {
+        for (cell, units) in [
+            ("E_QP (eV)", vec!["eV"]),
+            ("E_QP[meV]", vec!["meV"]),
+            ("E_QP / kJ/mol", vec!["kJ/mol"]),
+            ("energy in Ha", vec!["Ha"]),
+            ("E_QP_eV", vec!["eV"]),
+            ("energy_qp_ev", vec!["ev"]),
+            ("E_QP_mev", vec!["mev"]),
+            ("E (eV) [Ha]", vec!["eV", "Ha"]),
+            ("E_QP (keV)", vec!["keV"]),
+            ("E_QP(k) (eV)", vec!["eV"]),
+            ("E / (eV)", vec!["eV"]),
+            ("E_QP", vec![]),
+        ] {
+            assert_eq!(levels(cell).units, units, "{cell}");
+        }
+        assert_eq!(spectrum("Intensity / counts/s").units, ["counts/s"]);
+        assert_eq!(spectrum("intensity_cps").units, ["cps"]);
+    }
+}

@@ -1,0 +1,370 @@
+//! What comment lines say: `key: value` and `key = value`, and sentences such as `energies in Ha`.
+
+use std::ops::Range;
+
+use super::condition::{self, ConditionKey, Value};
+use super::evidence::Evidence;
+use super::header;
+use super::problem::Problems;
+use super::role::Kind;
+use super::words;
+use super::{Place, Problem, Source};
+use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit, Reference};
+
+/// One statement of a comment line.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Statement {
+    /// The key, as the file writes it.
+    pub key: String,
+    /// The value, as the file writes it.
+    pub value: String,
+    /// Where it stands.
+    pub place: Place,
+}
+
+/// Everything that the comment lines of a table say.
+#[derive(Debug, Default)]
+pub(super) struct Metadata {
+    /// Every statement, known or not.
+    pub statements: Vec<Statement>,
+    /// The known ones: the key, the value, and the statement's index.
+    pub known: Vec<(ConditionKey, Value, usize)>,
+    /// What is said of the unit of the energies.
+    pub energy_units: Vec<Evidence<EnergyUnit>>,
+    /// What is said of the unit of the intensities.
+    pub intensity_units: Vec<Evidence<IntensityUnit>>,
+    /// What is said of the axis.
+    pub axes: Vec<Evidence<AxisKind>>,
+    /// What is said of the zero.
+    pub references: Vec<Evidence<Reference>>,
+}
+
+/// Reads the comments of a table of `kind`; what is known but unreadable becomes a problem.
+pub(super) fn read(
+    source: &Source,
+    comments: impl Iterator<Item = Range<usize>>,
+    kind: Kind,
+    problems: &mut Problems,
+) -> Metadata {
+    let mut metadata = Metadata::default();
+    for comment in comments {
+        let text = source.slice(comment.clone());
+        let parts = statements(text);
+        if parts.is_empty() {
+            metadata.sentence(text, &source.place(comment));
+            continue;
+        }
+        for (key, value) in parts {
+            let span = comment.start + key.start..comment.start + value.end;
+            let statement = Statement {
+                key: text[key].trim().to_owned(),
+                value: text[value].trim().to_owned(),
+                place: source.place(span),
+            };
+            if let Err(problem) = metadata.statement(&statement, kind) {
+                problems.push(problem);
+            }
+        }
+    }
+    metadata
+}
+
+/// Whether a comment is a statement rather than a line of names.
+pub(super) fn is_statement(text: &str) -> bool {
+    !statements(text).is_empty()
+}
+
+/// The keys and values of a comment: one pair, or several separated by commas or semicolons.
+fn statements(text: &str) -> Vec<(Range<usize>, Range<usize>)> {
+    let mut pieces = Vec::new();
+    let mut start = 0;
+    for (at, mark) in text.match_indices([',', ';']) {
+        pieces.push(start..at);
+        start = at + mark.len();
+    }
+    pieces.push(start..text.len());
+    let pairs: Vec<_> = pieces.into_iter().map(|piece| pair(text, piece)).collect();
+    if pairs.len() > 1 && pairs.iter().all(Option::is_some) {
+        return pairs.into_iter().flatten().collect();
+    }
+    pair(text, 0..text.len()).into_iter().collect()
+}
+
+fn pair(text: &str, piece: Range<usize>) -> Option<(Range<usize>, Range<usize>)> {
+    let at = piece.start + text[piece.clone()].find([':', '='])?;
+    let key = text[piece.start..at].trim();
+    let value = text[at + 1..piece.end].trim_end();
+    (!key.is_empty() && !value.trim().is_empty()).then(|| {
+        let start =
+            piece.start + text[piece.start..at].len() - text[piece.start..at].trim_start().len();
+        (start..at, at + 1..at + 1 + value.len())
+    })
+}
+
+impl Metadata {
+    /// The comment's name as evidence.
+    fn says(place: &Place) -> String {
+        format!("the comment on line {}", place.line)
+    }
+
+    fn statement(&mut self, statement: &Statement, kind: Kind) -> Result<(), Problem> {
+        let index = self.statements.len();
+        self.statements.push(statement.clone());
+        if let Some(unit) = unit_key(&statement.key) {
+            return self.units(unit, statement);
+        }
+        let Some((key, unit)) = condition::recognise(&statement.key, kind) else {
+            return Ok(());
+        };
+        if key == ConditionKey::Reference && statement.value.contains(|c: char| c.is_ascii_digit())
+        {
+            // A reference to the literature, which names no zero.
+            return Ok(());
+        }
+        let value = condition::read(key, &statement.value, unit.as_deref()).map_err(|why| {
+            Problem::new(format!("`{}`: {why}", statement.key))
+                .at(statement.place.clone())
+                .with_help("correct the line; one that does not begin with this key is not read")
+        })?;
+        let says = Self::says(&statement.place);
+        match &value {
+            Value::Axis(axis) => {
+                self.axes
+                    .push(Evidence::at(*axis, says, statement.place.clone()));
+            }
+            Value::Reference(Reference::Unknown) => {}
+            Value::Reference(reference) => {
+                self.references
+                    .push(Evidence::at(*reference, says, statement.place.clone()));
+            }
+            _ => self.same_as_before(key, &value, statement)?,
+        }
+        self.known.push((key, value, index));
+        Ok(())
+    }
+
+    fn same_as_before(
+        &self,
+        key: ConditionKey,
+        value: &Value,
+        statement: &Statement,
+    ) -> Result<(), Problem> {
+        let before = self
+            .known
+            .iter()
+            .find(|(known, other, _)| *known == key && other != value);
+        let Some((_, _, index)) = before else {
+            return Ok(());
+        };
+        let other = &self.statements[*index];
+        Err(Problem::new(format!(
+            "`{}` is `{}` here and `{}` on line {}",
+            statement.key, statement.value, other.value, other.place.line
+        ))
+        .at(statement.place.clone())
+        .with_related(other.place.clone(), "the other value")
+        .with_help("keep the line that is true"))
+    }
+
+    /// A statement of units: each item must be one; text of several words is left alone.
+    fn units(&mut self, about: UnitOf, statement: &Statement) -> Result<(), Problem> {
+        for item in statement.value.split([',', ';']).map(str::trim) {
+            let known = (about != UnitOf::Intensity && self.energy_unit(item, &statement.place))
+                || (about != UnitOf::Energy && self.intensity_unit(item, &statement.place));
+            if !known && !item.contains(' ') {
+                return Err(Problem::new(format!(
+                    "`{}`: `{item}` is not the spelling of a unit",
+                    statement.key
+                ))
+                .at(statement.place.clone())
+                .with_help("energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm or K; intensities in counts, counts/s or arb. u."));
+            }
+        }
+        Ok(())
+    }
+
+    fn energy_unit(&mut self, text: &str, place: &Place) -> bool {
+        let unit = EnergyUnit::from_spelling(text);
+        self.energy_units
+            .extend(unit.map(|unit| Evidence::at(unit, Self::says(place), place.clone())));
+        unit.is_some()
+    }
+
+    fn intensity_unit(&mut self, text: &str, place: &Place) -> bool {
+        let unit = IntensityUnit::from_spelling(text);
+        self.intensity_units
+            .extend(unit.map(|unit| Evidence::at(unit, Self::says(place), place.clone())));
+        unit.is_some()
+    }
+
+    /// A sentence such as `All energies are in eV relative to the Fermi level`.
+    fn sentence(&mut self, text: &str, place: &Place) {
+        let text = text.trim_end_matches('.');
+        let Some((about, rest)) = subject(text) else {
+            return;
+        };
+        let (rest, zero) = match words::relation(rest) {
+            Some((before, _, zero)) => (before, Some(zero)),
+            None => (rest, None),
+        };
+        let unit = rest.trim().strip_prefix("in ").map(str::trim);
+        if let Some(unit) = unit {
+            match about {
+                UnitOf::Intensity => self.intensity_unit(unit, place),
+                _ => self.energy_unit(unit, place),
+            };
+        }
+        let only_zero = unit.is_some() || rest.trim().is_empty();
+        if let (Some(zero), true, UnitOf::Energy) = (zero, only_zero, about) {
+            self.references
+                .push(Evidence::at(zero, Self::says(place), place.clone()));
+        }
+    }
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+enum UnitOf {
+    Energy,
+    Intensity,
+    Either,
+}
+
+/// Keys such as `units`, `energy unit`, `unit of intensity`.
+fn unit_key(key: &str) -> Option<UnitOf> {
+    let words: Vec<String> = key
+        .split_whitespace()
+        .map(str::to_lowercase)
+        .filter(|word| word != "of" && word != "the")
+        .collect();
+    let words: Vec<&str> = words.iter().map(String::as_str).collect();
+    Some(match words.as_slice() {
+        ["unit" | "units"] => UnitOf::Either,
+        ["energy" | "energies", "unit" | "units"] | ["unit" | "units", "energy" | "energies"] => {
+            UnitOf::Energy
+        }
+        ["intensity" | "intensities", "unit" | "units"]
+        | ["unit" | "units", "intensity" | "intensities"] => UnitOf::Intensity,
+        _ => return None,
+    })
+}
+
+/// The subject of a sentence about energies or intensities, and what follows it.
+fn subject(text: &str) -> Option<(UnitOf, &str)> {
+    let mut about = None;
+    let mut at = 0;
+    for word in text.split_inclusive(' ') {
+        match word.trim().to_lowercase().as_str() {
+            "" | "all" | "the" | "band" | "given" | "are" | "is" | "measured" => {}
+            "energies" | "energy" | "eigenvalues" if about.is_none() => {
+                about = Some(UnitOf::Energy);
+            }
+            "intensities" | "intensity" if about.is_none() => about = Some(UnitOf::Intensity),
+            _ => break,
+        }
+        at += word.len();
+    }
+    // The blank before the rest stays, so that a relation may stand first.
+    let start = at.saturating_sub(usize::from(text[..at].ends_with(' ')));
+    about.map(|about| (about, &text[start..]))
+}
+
+/// The axis that a text names, as `kinetic`, `binding energy` or `E - E_F`.
+pub(super) fn axis_named(text: &str) -> Option<AxisKind> {
+    AxisKind::from_name(&text.to_lowercase()).or_else(|| header::read(text, Kind::Spectrum).axis)
+}
+
+/// The zero that a text names, as `fermi` or `vacuum level`.
+pub(super) fn reference_named(text: &str) -> Option<Reference> {
+    Reference::from_name(&text.to_lowercase()).or_else(|| words::reference(text))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn of(text: &str, kind: Kind) -> (Metadata, Vec<Problem>) {
+        let source = Source::from_text("t", text);
+        let lines: Vec<_> = source.lines_from(0).map(|l| l.start..l.end).collect();
+        let mut problems = Problems::default();
+        let metadata = read(&source, lines.into_iter(), kind, &mut problems);
+        (metadata, problems.into_list())
+    }
+
+    #[test]
+    fn prose_trips_nothing() {
+        let text = "invented data: see README\nmade on 2020-01-01 12:30\nE_F = 5\nangular resolution: 0.1 deg\n\
+                    resolution sigma: 5\nenergies, as the reader knows, vary\ntime: now\nwork function of the sample: unknown\n\
+                    energy is conserved\nhttps://example.org\nreference: J. Inv. Sci. 12, 3 (2001)\n=\n:\n";
+        let (metadata, problems) = of(text, Kind::Spectrum);
+        assert_eq!(problems, []);
+        assert_eq!(metadata.known, []);
+        assert!(metadata.energy_units.is_empty() && metadata.references.is_empty());
+    }
+
+    #[test]
+    fn sentences_give_units_and_zeros() {
+        for (text, unit, zero) in [
+            ("energies in Ha", Some(EnergyUnit::Hartree), None),
+            (
+                "All energies are in eV relative to the Fermi level.",
+                Some(EnergyUnit::Electronvolt),
+                Some(Reference::Fermi),
+            ),
+            ("energies relative to vacuum", None, Some(Reference::Vacuum)),
+            ("units: eV", Some(EnergyUnit::Electronvolt), None),
+            ("energy unit = Ry", Some(EnergyUnit::Rydberg), None),
+            ("reference: E_VBM", None, Some(Reference::ValenceEdge)),
+        ] {
+            let (metadata, problems) = of(text, Kind::Levels);
+            assert_eq!(problems, [], "{text}");
+            assert_eq!(
+                metadata.energy_units.first().map(|e| e.value),
+                unit,
+                "{text}"
+            );
+            assert_eq!(metadata.references.first().map(|e| e.value), zero, "{text}");
+        }
+        let (metadata, _) = of("units: eV, counts/s", Kind::Spectrum);
+        assert_eq!(
+            metadata.intensity_units[0].value,
+            IntensityUnit::CountsPerSecond
+        );
+    }
+
+    #[test]
+    fn several_statements_on_a_line() {
+        let (metadata, problems) = of("hv = 21.218 eV, T = 300 K", Kind::Spectrum);
+        assert_eq!(problems, []);
+        assert_eq!(metadata.known.len(), 2);
+        assert_eq!(metadata.statements[1].place.column, 17);
+    }
+
+    #[test]
+    fn known_keys_with_bad_values_are_located() {
+        let (_, problems) = of("photon energy: 21.218\n", Kind::Spectrum);
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `photon energy`: expected an energy with its unit (eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm, K), such as `21.218 eV`, and found `21.218` without a unit
+      help: correct the line; one that does not begin with this key is not read
+    ");
+        let (_, problems) = of(
+            "T: 300 K\nhv: 1 eV\nsample temperature: 80 K\n",
+            Kind::Spectrum,
+        );
+        insta::assert_snapshot!(problems[0], @r"
+    t:3:1: `sample temperature` is `80 K` here and `300 K` on line 1
+      t:1:1: the other value
+      help: keep the line that is true
+    ");
+        let (_, problems) = of("units: keV\n", Kind::Levels);
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `units`: `keV` is not the spelling of a unit
+      help: energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1, nm or K; intensities in counts, counts/s or arb. u.
+    ");
+        let (_, problems) = of("axis: sideways\n", Kind::Spectrum);
+        insta::assert_snapshot!(problems[0], @r"
+    t:1:1: `axis`: expected kinetic, binding, final-state or photon, and found `sideways`
+      help: correct the line; one that does not begin with this key is not read
+    ");
+        assert_eq!(of("T: 300 K\nT = 300.0 K", Kind::Spectrum).1, []);
+    }
+}

@@ -1,0 +1,369 @@
+//! A text with its name, and the one conversion from byte offsets to line and column.
+
+use std::fs;
+use std::io::ErrorKind;
+use std::ops::Range;
+use std::path::Path;
+
+use sha2::{Digest, Sha256};
+
+use super::Problem;
+use crate::schema::SourceRecord;
+
+/// Lines between two remembered line starts.
+const ANCHOR_LINES: usize = 1_000;
+/// Characters of a line that an excerpt shows.
+const EXCERPT_CHARS: usize = 120;
+/// Characters shown before the span where a line is cut.
+const EXCERPT_BEFORE: usize = 40;
+const BOM: char = '\u{feff}';
+
+/// A text that was read, with its name and the record of its bytes.
+///
+/// Offsets are zero-based bytes of the file, a byte order mark included.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Source {
+    name: String,
+    text: String,
+    record: SourceRecord,
+    anchors: Vec<usize>,
+}
+
+/// A place in a text, ready to be shown.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Place {
+    /// The shown name of the file.
+    pub file: String,
+    /// The 1-based line; LF, CRLF and CR each end one.
+    pub line: usize,
+    /// The 1-based column in characters; a tab counts one, a byte order mark none.
+    pub column: usize,
+    /// The line, cut around the span where it is long, with blanks for control characters.
+    pub excerpt: String,
+    /// The span within the excerpt, in characters.
+    pub highlight: Range<usize>,
+}
+
+/// One line of a text, in bytes.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Line {
+    /// Its first byte.
+    pub start: usize,
+    /// The end of its content.
+    pub end: usize,
+    /// The first byte after its terminator.
+    pub next: usize,
+}
+
+impl Source {
+    /// Reads a regular file of UTF-8 text, with or without a byte order mark.
+    ///
+    /// # Errors
+    /// A file that is missing, unreadable, not regular, or not UTF-8.
+    pub fn read(path: &Path, shown: &str) -> Result<Self, Problem> {
+        let name = path.display();
+        let metadata = fs::metadata(path).map_err(|error| match error.kind() {
+            ErrorKind::NotFound => Problem::new(format!("there is no file `{name}`")),
+            _ => Problem::new(format!("cannot read `{name}`: {error}")),
+        })?;
+        if !metadata.is_file() {
+            let kind = if metadata.is_dir() {
+                "a directory"
+            } else {
+                "a device, pipe or socket"
+            };
+            return Err(Problem::new(format!(
+                "`{name}` is {kind}; expected a regular file"
+            )));
+        }
+        let bytes = fs::read(path)
+            .map_err(|error| Problem::new(format!("cannot read `{name}`: {error}")))?;
+        Self::from_bytes(shown, bytes)
+    }
+
+    /// A source from text in memory.
+    #[must_use]
+    pub fn from_text(shown: &str, text: &str) -> Self {
+        Self::new(shown, text.to_owned(), record_of(shown, text.as_bytes()))
+    }
+
+    /// A source from bytes, refused where they are not UTF-8.
+    pub(super) fn from_bytes(shown: &str, bytes: Vec<u8>) -> Result<Self, Problem> {
+        let record = record_of(shown, &bytes);
+        match String::from_utf8(bytes) {
+            Ok(text) => Ok(Self::new(shown, text, record)),
+            Err(error) => Err(not_utf8(shown, record, &error)),
+        }
+    }
+
+    fn new(shown: &str, text: String, record: SourceRecord) -> Self {
+        let anchors = lines(&text, 0)
+            .step_by(ANCHOR_LINES)
+            .map(|line| line.start)
+            .collect();
+        Self {
+            name: shown.to_owned(),
+            text,
+            record,
+            anchors,
+        }
+    }
+
+    /// The name to show.
+    #[must_use]
+    pub fn name(&self) -> &str {
+        &self.name
+    }
+
+    /// The whole text, a byte order mark included, so that offsets are bytes of the file.
+    #[must_use]
+    pub fn text(&self) -> &str {
+        &self.text
+    }
+
+    /// The size and hash of the raw bytes.
+    #[must_use]
+    pub fn record(&self) -> &SourceRecord {
+        &self.record
+    }
+
+    /// The place of a span of bytes. A span outside the text is moved to its nearest place.
+    #[must_use]
+    pub fn place(&self, span: Range<usize>) -> Place {
+        let (number, line) = self.line_at(span.start);
+        let content = &self.text[line.start..line.end];
+        let before = chars_before(content, span.start.saturating_sub(line.start));
+        let until = chars_before(content, span.end.saturating_sub(line.start)).max(before);
+        let (excerpt, highlight) = excerpt(content, before..until);
+        Place {
+            file: self.name.clone(),
+            line: number,
+            column: before + 1,
+            excerpt,
+            highlight,
+        }
+    }
+
+    /// The text of a span; empty where it is none.
+    pub(super) fn slice(&self, span: Range<usize>) -> &str {
+        self.text.get(span).unwrap_or("")
+    }
+
+    /// The lines from a byte that starts one.
+    pub(super) fn lines_from(&self, start: usize) -> impl Iterator<Item = Line> + '_ {
+        lines(&self.text, start)
+    }
+
+    /// The number of the line that holds a byte, 1-based, and the line.
+    fn line_at(&self, byte: usize) -> (usize, Line) {
+        let anchor = self
+            .anchors
+            .partition_point(|&start| start <= byte)
+            .saturating_sub(1);
+        let start = self.anchors.get(anchor).copied().unwrap_or(0);
+        let first = Line {
+            start,
+            end: start,
+            next: start,
+        };
+        self.lines_from(start)
+            .enumerate()
+            .take_while(|(index, line)| *index == 0 || line.start <= byte)
+            .last()
+            .map_or((1, first), |(index, line)| {
+                (anchor * ANCHOR_LINES + index + 1, line)
+            })
+    }
+}
+
+fn record_of(shown: &str, bytes: &[u8]) -> SourceRecord {
+    use std::fmt::Write as _;
+    let mut sha256 = String::with_capacity(64);
+    for byte in Sha256::digest(bytes) {
+        // Writing to a string cannot fail.
+        let _ = write!(sha256, "{byte:02x}");
+    }
+    SourceRecord {
+        file: shown.to_owned(),
+        size_bytes: bytes.len() as u64,
+        sha256,
+    }
+}
+
+fn not_utf8(shown: &str, record: SourceRecord, error: &std::string::FromUtf8Error) -> Problem {
+    let at = error.utf8_error().valid_up_to();
+    let byte = error.as_bytes().get(at).copied().unwrap_or(0);
+    let wide =
+        error.as_bytes().starts_with(&[0xff, 0xfe]) || error.as_bytes().starts_with(&[0xfe, 0xff]);
+    let lossy = String::from_utf8_lossy(error.as_bytes()).into_owned();
+    let source = Source::new(shown, lossy, record);
+    let help = if wide {
+        "the file looks like UTF-16; save it as UTF-8"
+    } else {
+        "save the file as UTF-8; in an older one-byte encoding this may be a sign such as µ, ± or °"
+    };
+    Problem::new(format!("the byte 0x{byte:02X} is not UTF-8 text"))
+        .at(source.place(at..at + char::REPLACEMENT_CHARACTER.len_utf8()))
+        .with_help(help)
+}
+
+/// The lines of a text from a byte that starts one; a byte order mark belongs to none.
+fn lines(text: &str, start: usize) -> impl Iterator<Item = Line> + '_ {
+    let bytes = text.as_bytes();
+    let mut at = if start == 0 && text.starts_with(BOM) {
+        BOM.len_utf8()
+    } else {
+        start
+    };
+    std::iter::from_fn(move || {
+        let rest = bytes.get(at..).filter(|rest| !rest.is_empty())?;
+        let length = rest
+            .iter()
+            .position(|byte| matches!(byte, b'\n' | b'\r'))
+            .unwrap_or(rest.len());
+        let terminator = match &rest[length..] {
+            [b'\r', b'\n', ..] => 2,
+            [] => 0,
+            _ => 1,
+        };
+        let line = Line {
+            start: at,
+            end: at + length,
+            next: at + length + terminator,
+        };
+        at = line.next;
+        Some(line)
+    })
+}
+
+/// The number of characters that start before a byte of the text.
+fn chars_before(text: &str, byte: usize) -> usize {
+    text.char_indices()
+        .take_while(|(at, character)| at + character.len_utf8() <= byte)
+        .count()
+}
+
+/// The line as shown, cut around the span, and the span within it.
+fn excerpt(line: &str, span: Range<usize>) -> (String, Range<usize>) {
+    let length = line.chars().count();
+    let shown = |character: char| {
+        if character.is_control() {
+            ' '
+        } else {
+            character
+        }
+    };
+    if length <= EXCERPT_CHARS {
+        return (line.chars().map(shown).collect(), span);
+    }
+    let from = span
+        .start
+        .saturating_sub(EXCERPT_BEFORE)
+        .min(length - EXCERPT_CHARS);
+    let to = from + EXCERPT_CHARS;
+    let mut text: String = if from > 0 {
+        "…".into()
+    } else {
+        String::new()
+    };
+    let shift = usize::from(from > 0);
+    text.extend(line.chars().skip(from).take(EXCERPT_CHARS).map(shown));
+    if to < length {
+        text.push('…');
+    }
+    let end = span.end.min(to);
+    (text, span.start - from + shift..end - from + shift)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    fn at(text: &str, needle: &str) -> Place {
+        let start = text.find(needle).unwrap();
+        Source::from_text("t", text).place(start..start + needle.len())
+    }
+
+    #[test]
+    fn line_ends_tabs_marks_and_wide_characters_count_as_people_count() {
+        for (text, line, column) in [
+            ("a\nbb X", 2, 4),
+            ("a\r\nbb X", 2, 4),
+            ("a\rbb X", 2, 4),
+            ("\u{feff}X", 1, 1),
+            ("\u{feff}a\n\tX", 2, 2),
+            ("µ−世 X", 1, 5),
+            ("\n\n\r\n\rX", 5, 1),
+        ] {
+            let place = at(text, "X");
+            assert_eq!((place.line, place.column), (line, column), "{text:?}");
+            let shown: String = place
+                .excerpt
+                .chars()
+                .skip(place.highlight.start)
+                .take(place.highlight.len())
+                .collect();
+            assert_eq!(shown, "X", "{text:?}");
+        }
+    }
+
+    #[test]
+    fn long_line_is_cut_around_the_span() {
+        let text = format!("{}X{}", "a".repeat(500), "b".repeat(500));
+        let place = at(&text, "X");
+        assert_eq!(place.column, 501);
+        assert_eq!(place.excerpt.chars().count(), EXCERPT_CHARS + 2);
+        assert_eq!(place.excerpt.chars().nth(place.highlight.start), Some('X'));
+    }
+
+    #[test]
+    fn lines_beyond_the_anchors_are_found() {
+        let text = "x\r\n".repeat(3_500);
+        let place = Source::from_text("t", &text).place(3 * 3_210..3 * 3_210 + 1);
+        assert_eq!((place.line, place.column), (3_211, 1));
+    }
+
+    #[test]
+    fn bytes_that_are_not_utf8_are_located() {
+        let problem = Source::from_bytes("f.txt", b"# ok\n1 \xb5eV\n".to_vec()).unwrap_err();
+        let place = problem.place.clone().unwrap();
+        assert_eq!((place.line, place.column), (2, 3));
+        assert!(problem.message.contains("0xB5"), "{problem}");
+        let wide = Source::from_bytes("f", vec![0xff, 0xfe, b'a', 0]).unwrap_err();
+        assert!(wide.help.unwrap().contains("UTF-16"));
+    }
+
+    #[test]
+    fn only_regular_files_are_read() {
+        let folder = tempfile::tempdir().unwrap();
+        let refused = Source::read(folder.path(), "d").unwrap_err();
+        assert!(refused.message.contains("a directory"), "{refused}");
+        let absent = folder.path().join("absent.txt");
+        let missing = Source::read(&absent, "absent.txt").unwrap_err();
+        assert!(missing.message.contains(absent.to_str().unwrap()));
+        let file = folder.path().join("there.txt");
+        std::fs::write(&file, "\u{feff}abc").unwrap();
+        let source = Source::read(&file, "there.txt").unwrap();
+        assert_eq!(source.record().size_bytes, 6);
+        assert!(Source::read(Path::new("/dev/null"), "null").is_err());
+    }
+
+    #[test]
+    fn hash_is_of_the_bytes() {
+        // FIPS 180-4, the example message "abc".
+        assert_eq!(
+            Source::from_text("t", "abc").record().sha256,
+            "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"
+        );
+    }
+
+    proptest! {
+        #[test]
+        fn place_never_panics(text in "[a\r\n\tµ世\u{feff}]{0,40}", a in 0usize..200, b in 0usize..200) {
+            let place = Source::from_text("t", &text).place(a..b);
+            prop_assert!(place.highlight.end <= place.excerpt.chars().count());
+            prop_assert!(place.highlight.start <= place.highlight.end);
+        }
+    }
+}

@@ -1,0 +1,162 @@
+//! The unit of a column: from its header, a comment, or the user, all of whom must agree.
+
+use std::fmt::Display;
+
+use super::evidence::{Evidence, agree};
+use super::role::{Hints, Role};
+use super::table::Table;
+use super::{Problem, Source};
+use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit};
+
+/// Where units of columns are looked for.
+#[derive(Clone, Copy)]
+pub(super) struct Units<'a> {
+    pub source: &'a Source,
+    pub table: &'a Table,
+    pub hints: &'a Hints,
+}
+
+impl Units<'_> {
+    /// The unit of a column of energies; a wavelength only on a photon axis.
+    pub fn energy(
+        &self,
+        role: Role,
+        field: usize,
+        axis: Option<AxisKind>,
+    ) -> Result<Evidence<EnergyUnit>, Problem> {
+        let comments = self.table.metadata.energy_units.clone();
+        let found = self.unit(role, field, EnergyUnit::from_spelling, &[], comments)?;
+        let found = found.ok_or_else(|| self.missing(role, field, "eV"))?;
+        if found.value.is_linear() || axis == Some(AxisKind::Photon) {
+            return Ok(found);
+        }
+        Err(Problem::new(format!(
+            "column {} is given in {} by {}, but only photon energies are given by a wavelength",
+            field + 1,
+            found.value,
+            found.says
+        ))
+        .at(self.table.place_of(self.source, field)))
+    }
+
+    /// The unit of the intensities; the name "counts" is evidence too.
+    pub fn intensity(&self, field: usize) -> Result<Evidence<IntensityUnit>, Problem> {
+        let named = self.table.names[field].reading.counts;
+        let named: &[IntensityUnit] = if named { &[IntensityUnit::Counts] } else { &[] };
+        let comments = self.table.metadata.intensity_units.clone();
+        let role = Role::Intensity;
+        self.unit(role, field, IntensityUnit::from_spelling, named, comments)?
+            .ok_or_else(|| self.missing(role, field, "counts"))
+    }
+
+    /// The unit of the uncertainties, which is that of the intensities where it is not given.
+    pub fn uncertainty(
+        &self,
+        field: usize,
+        intensity: &Evidence<IntensityUnit>,
+    ) -> Result<Evidence<IntensityUnit>, Problem> {
+        let role = Role::StandardUncertainty;
+        let own = self.unit(role, field, IntensityUnit::from_spelling, &[], Vec::new())?;
+        let says = format!("the intensities, by {}", intensity.says);
+        let of_intensity = Evidence {
+            says,
+            ..intensity.clone()
+        };
+        let both = own.into_iter().chain([of_intensity.clone()]).collect();
+        agree(
+            "the unit of the intensities and of their uncertainties",
+            both,
+        )
+        .map(|agreed| agreed.unwrap_or(of_intensity))
+    }
+
+    fn unit<T: Copy + PartialEq + Display>(
+        &self,
+        role: Role,
+        field: usize,
+        read: impl Fn(&str) -> Option<T>,
+        named: &[T],
+        comments: Vec<Evidence<T>>,
+    ) -> Result<Option<Evidence<T>>, Problem> {
+        let (says, place) = (
+            self.table.says(self.source, field),
+            self.table.place_of(self.source, field),
+        );
+        let mut evidence = Vec::new();
+        for text in &self.table.names[field].reading.units {
+            let unit = read(text).ok_or_else(|| self.unknown(text, field))?;
+            evidence.push(Evidence::at(unit, says.clone(), place.clone()));
+        }
+        for &unit in named {
+            evidence.push(Evidence::at(unit, says.clone(), place.clone()));
+        }
+        evidence.extend(comments);
+        evidence.extend(self.hinted(role, read)?);
+        agree(&format!("the unit of {role}"), evidence)
+    }
+
+    /// What the user says; `unit.energy` speaks for every energy without a setting of its own.
+    fn hinted<T>(
+        &self,
+        role: Role,
+        read: impl Fn(&str) -> Option<T>,
+    ) -> Result<Option<Evidence<T>>, Problem> {
+        let general = matches!(role, Role::EnergyMeanField | Role::EnergyQuasiparticle)
+            .then_some(Role::Energy);
+        let given = [Some(role), general].into_iter().flatten();
+        let mut given = given.filter_map(|role| Some((role, self.hints.units.get(&role)?)));
+        let Some((role, text)) = given.next() else {
+            return Ok(None);
+        };
+        let says = self.hints.says(&format!("unit.{role}"));
+        match read(text) {
+            Some(unit) => Ok(Some(Evidence::setting(unit, says))),
+            None => Err(Problem::new(format!(
+                "{says}: `{text}` is not the spelling of a unit for it"
+            ))
+            .with_help(spellings(role))),
+        }
+    }
+
+    fn unknown(&self, text: &str, field: usize) -> Problem {
+        let role = self.table.fields.iter().find(|&(_, &other)| other == field);
+        Problem::new(format!(
+            "`{text}` in {} is not the spelling of a unit for it",
+            self.table.says(self.source, field)
+        ))
+        .at(self.table.place_of(self.source, field))
+        .with_help(format!(
+            "{}; a remark goes elsewhere than in the brackets of a unit",
+            spellings(role.map_or(Role::Energy, |(&role, _)| role))
+        ))
+    }
+
+    fn missing(&self, role: Role, field: usize, example: &str) -> Problem {
+        let problem = Problem::new(format!(
+            "nothing says the unit of column {} `{}`, read as {role}",
+            field + 1,
+            self.table.names[field].text
+        ))
+        .at(self.table.place_of(self.source, field));
+        problem.with_help(format!(
+            "write it in the header, or as {}; {}",
+            self.hints.setting(&format!("unit.{role} = \"{example}\"")),
+            spellings(role)
+        ))
+    }
+}
+
+fn spellings(role: Role) -> String {
+    match role {
+        Role::Intensity | Role::StandardUncertainty => {
+            "intensities are in counts, counts/s or arb. u.".to_owned()
+        }
+        _ => {
+            let all: Vec<&str> = EnergyUnit::ALL
+                .into_iter()
+                .map(EnergyUnit::symbol)
+                .collect();
+            format!("energies are in {}", all.join(", "))
+        }
+    }
+}
