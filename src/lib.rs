@@ -11,6 +11,11 @@
 #![forbid(unsafe_code)]
 #![deny(missing_docs)]
 
+pub mod align;
+pub mod check;
+pub mod cli;
+pub mod compare;
+pub mod export;
 pub mod parse;
 pub mod quantity;
 pub mod schema;

@@ -26,7 +26,7 @@ use super::density::{Density, Derivatives, Domain, Plan, Sampler, Values};
 use super::least_squares::{Model, Solution, Weighing, covariance, minimise, whiten};
 use super::misfit::{Misfit, runs_probability};
 use super::noise::Noise;
-use super::sampling::Sampled;
+use super::sampling::{Deviations, Sampled};
 use super::window::Window;
 use crate::schema::Side;
 
@@ -277,7 +277,7 @@ impl EdgeProblem {
             .collect();
         let deviations =
             levels.deviations(&self.energies, self.options.side, self.density(p), p[1], p[5]);
-        let mut covariance = &deviations * deviations.transpose();
+        let mut covariance = &deviations.model * deviations.model.transpose();
         for (index, variance) in variances.iter().enumerate() {
             covariance[(index, index)] += variance;
         }
@@ -409,6 +409,27 @@ impl EdgeProblem {
         (model, jacobian)
     }
 
+    /// One Newton step from the solution of the plain objective to that of the unbiased one: the six
+    /// parameters move by (J'V^-1 J)^-1 times half the gradient of tr(V^-1 C).
+    fn unbiased(&self, p: [f64; PARAMETERS], cov: &DMatrix<f64>, spread: &Spread) -> [f64; PARAMETERS] {
+        let Deviations { model, derivatives } = &spread.deviations;
+        let inverse = spread.root.solve(model);
+        let half = |derivative: &DMatrix<f64>| derivative.dot(&inverse);
+        let [shift, variance, gamma, step] = derivatives.each_ref().map(half);
+        let amplitude = model.dot(&inverse) / p[1];
+        let gradient =
+            DVector::from_column_slice(&[shift, amplitude, variance, gamma, 0.0, step]);
+        let move_by = cov * gradient;
+        let mut moved = p;
+        for (parameter, by) in moved.iter_mut().zip(move_by.iter()) {
+            *parameter += by;
+        }
+        for bounded in &mut moved[1..] {
+            *bounded = bounded.max(0.0);
+        }
+        moved
+    }
+
     fn report(&self, solution: &Solution, spread: &Spread) -> EdgeFit {
         let p = self.natural(&solution.parameters);
         let (model, jacobian) = self.model_and_derivatives(&p);
@@ -424,6 +445,7 @@ impl EdgeProblem {
         #[allow(clippy::cast_precision_loss)] // A number of channels.
         let reduced_chi_square = chi_square / degrees_of_freedom as f64;
         let gains = self.gains(&cov, &weighted, spread);
+        let p = self.unbiased(p, &cov, spread);
         let inadequate = fit_probability < INADEQUATE || runs_probability < INADEQUATE;
         let inflation = if inadequate || matches!(self.noise, Noise::Variance(_)) {
             reduced_chi_square.max(1.0)
@@ -442,7 +464,7 @@ impl EdgeProblem {
             covariance: cov,
             total_variance: self.variance_floor + p[2],
             noise_variance: by_noise.sum::<f64>() * inflation,
-            influence: (spread.deviations.tr_mul(&gains) * inflation.sqrt())
+            influence: (spread.deviations.model.tr_mul(&gains) * inflation.sqrt())
                 .as_slice()
                 .to_vec(),
             reduced_chi_square,
@@ -484,7 +506,7 @@ struct Spread {
     /// Variances of the data.
     variances: Vec<f64>,
     /// Deviations of the model by group of k-points.
-    deviations: DMatrix<f64>,
+    deviations: Deviations,
 }
 
 impl Model for EdgeProblem {

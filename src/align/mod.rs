@@ -25,10 +25,10 @@ pub use metal_edge::{MetalEdge, fit_metal_edge};
 pub use misfit::{Misfit, deviance_residual, runs_probability};
 pub use noise::{Noise, estimate_noise, recovered_counts};
 pub use replicas::{ReplicaBias, tangent_bias};
-pub use sampling::{Groups, Sampled};
+pub use sampling::{Deviations, Groups, Sampled};
 pub use scan::{Alignment, scan};
 pub use tangent::{Tangent, TangentOptions, tangent};
-pub use voigt::{direct_sum, voigt, voigt_fwhm};
+pub use voigt::{direct_sum, voigt, voigt_derivatives, voigt_fwhm};
 pub use window::Window;
 
 /// Full width at half maximum of a Gaussian over its standard deviation, 2 sqrt(2 ln 2).

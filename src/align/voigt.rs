@@ -31,6 +31,26 @@ pub fn voigt(x: f64, sigma: f64, gamma: f64) -> f64 {
     Complex::new(x * scale, gamma * scale).w().re * scale / PI.sqrt()
 }
 
+/// The profile with its derivatives with respect to the distance (first and half of the second, which
+/// is that with respect to the Gaussian's variance) and to gamma, for sigma > 0.
+///
+/// w'(z) = -2 z w(z) + 2i/sqrt(pi), w'' = -2 w - 2 z w'.
+#[must_use]
+pub fn voigt_derivatives(x: f64, sigma: f64, gamma: f64) -> [f64; 4] {
+    let scale = 1.0 / (sigma * SQRT_2);
+    let norm = scale / PI.sqrt();
+    let z = Complex::new(x * scale, gamma * scale);
+    let w = z.w();
+    let first = -2.0 * z * w + Complex::new(0.0, 2.0 / PI.sqrt());
+    let second = -2.0 * w - 2.0 * z * first;
+    [
+        w.re * norm,
+        first.re * scale * norm,
+        0.5 * second.re * scale * scale * norm,
+        -first.im * scale * norm,
+    ]
+}
+
 /// The density of states `energies` (each with its weight) broadened by one Voigt profile, at each
 /// point of `grid`, by adding up every profile at every point.
 ///
@@ -59,4 +79,28 @@ pub fn direct_sum(
 #[must_use]
 pub fn voigt_fwhm(gaussian: f64, lorentzian: f64) -> f64 {
     0.5346 * lorentzian + (0.2166 * lorentzian * lorentzian + gaussian * gaussian).sqrt()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn derivatives_equal_differences() {
+        for (x, sigma, gamma) in [(0.1, 0.2, 0.05), (-0.7, 0.1, 0.3), (1.5, 0.3, 1e-4)] {
+            let [value, by_x, by_variance, by_gamma] = voigt_derivatives(x, sigma, gamma);
+            let h = 1e-6;
+            let of_variance = |v: f64| voigt(x, v.sqrt(), gamma);
+            let v = sigma * sigma;
+            let wanted = [
+                (voigt(x + h, sigma, gamma) - voigt(x - h, sigma, gamma)) / (2.0 * h),
+                (of_variance(v + h) - of_variance(v - h)) / (2.0 * h),
+                (voigt(x, sigma, gamma + h) - voigt(x, sigma, gamma - h)) / (2.0 * h),
+            ];
+            assert!((value - voigt(x, sigma, gamma)).abs() < 1e-13);
+            for (got, want) in [by_x, by_variance, by_gamma].iter().zip(wanted) {
+                assert!((got - want).abs() < 1e-6 * (1.0 + want.abs()), "{got} {want}");
+            }
+        }
+    }
 }
