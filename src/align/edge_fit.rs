@@ -9,7 +9,8 @@
 //! Shirley, Phys. Rev. B 5, 4709 (1972), without reusing the data's noise). A > 0, B >= 0, b >= 0.
 //! This is the density fit of Kraut, Grant, Waldrop and Kowalczyk, Phys. Rev. Lett. 44, 1620 (1980),
 //! by Poisson likelihood; edge = computed edge + s. The model is smooth in every parameter: bounded
-//! ones run through sines and squares, so that the solver needs no bounds.
+//! ones run through sines, logistic functions and exponentials, so that the solver needs no bounds and
+//! a width that wants to be zero gets there in a few steps.
 //!
 //! The levels stand at a finite number of k-points. A Poisson fit comes first; with C the covariance
 //! of the model that follows from their sampling (`sampling.rs`), the fit is then brought to the
@@ -30,12 +31,14 @@ use super::sampling::{Deviations, Sampled};
 use super::window::Window;
 use crate::schema::Side;
 
-/// Largest standard deviation of the sample's own Gaussian, eV.
-const SAMPLE_SIGMA_MAX: f64 = 0.3;
+/// Largest variance of the sample's own Gaussian, eV^2: 0.7 eV full width.
+const VARIANCE_MAX: f64 = 0.09;
 /// Largest Lorentzian half width, eV.
 const GAMMA_MAX: f64 = 0.5;
 /// A fit worse than this probability is called inadequate and its uncertainties are enlarged.
 const INADEQUATE: f64 = 1e-3;
+/// Where a bounded parameter starts that was at its bound, as a fraction of its range.
+const BARELY: f64 = 1e-3;
 /// Number of parameters.
 const PARAMETERS: usize = 6;
 
@@ -183,7 +186,7 @@ impl EdgeProblem {
             centre: 0.5 * (first + last) - options.shift,
             half_width: 0.5 * (last - first) + options.shift_range,
             sigma_min: variance_floor.sqrt(),
-            sigma_max: (variance_floor + SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX).sqrt(),
+            sigma_max: (variance_floor + VARIANCE_MAX).sqrt(),
         };
         let plan = Plan::new(levels.0, levels.1, domain);
         let sampler = Sampler::new(&kept, &plan);
@@ -246,7 +249,33 @@ impl EdgeProblem {
     }
 
     fn solve(&self, start: Vec<f64>) -> Solution {
-        minimise(self, Weighing::Channels(self.misfit()), start)
+        self.settle(Weighing::Channels(self.misfit()), start)
+    }
+
+    /// Minimises, and once more from just inside the bounds: a solver that overshoots to a bound sees
+    /// no slope there. The better of the two is kept.
+    fn settle(&self, weighing: Weighing<'_>, start: Vec<f64>) -> Solution {
+        let first = minimise(self, weighing, start);
+        let again = self.internal(&self.natural(&first.parameters));
+        let at_bound = first
+            .parameters
+            .iter()
+            .zip(&again)
+            .any(|(there, inside)| there < &(inside - 1e-9));
+        if !at_bound {
+            return first;
+        }
+        let second = minimise(self, weighing, again);
+        let evaluations = first.evaluations + second.evaluations;
+        let better = if second.deviance < first.deviance {
+            second
+        } else {
+            first
+        };
+        Solution {
+            evaluations,
+            ..better
+        }
     }
 
     /// Brings a Poisson fit to the one that knows of the sampling, the covariance taken twice.
@@ -258,7 +287,7 @@ impl EdgeProblem {
                 values: &self.values,
                 root: &spread.root,
             };
-            solution = minimise(self, weighing, solution.parameters);
+            solution = self.settle(weighing, solution.parameters);
             evaluations += solution.evaluations;
         }
         let spread = self.spread(&self.natural(&solution.parameters), levels);
@@ -313,15 +342,18 @@ impl EdgeProblem {
 
     /// From the six parameters to those of the solver.
     fn internal(&self, p: &[f64; PARAMETERS]) -> Vec<f64> {
-        let angle = |fraction: f64| fraction.clamp(0.0, 1.0).sqrt().clamp(0.02, 0.98).asin();
+        let logit = |value: f64, most: f64| {
+            let fraction = (value / most).clamp(BARELY, 1.0 - BARELY);
+            (fraction / (1.0 - fraction)).ln()
+        };
         let turn = (p[0] - self.options.shift) / self.options.shift_range;
         vec![
             turn.clamp(-0.95, 0.95).asin(),
-            p[1].max(1e-300).ln(),
-            angle(p[2] / (SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX)),
-            angle(p[3] / GAMMA_MAX),
-            p[4].max(0.0).sqrt(),
-            p[5].max(1e-6).sqrt(),
+            p[1].max(f64::MIN_POSITIVE).ln(),
+            logit(p[2], VARIANCE_MAX),
+            logit(p[3], GAMMA_MAX),
+            p[4].max(BARELY).ln(),
+            p[5].max(1e-2 * BARELY).ln(),
         ]
     }
 
@@ -329,23 +361,24 @@ impl EdgeProblem {
     fn natural(&self, q: &[f64]) -> [f64; PARAMETERS] {
         [
             self.options.shift + self.options.shift_range * q[0].sin(),
-            q[1].exp(),
-            (SAMPLE_SIGMA_MAX * q[2].sin()).powi(2),
-            GAMMA_MAX * q[3].sin().powi(2),
-            q[4] * q[4],
-            q[5] * q[5],
+            bounded_exp(q[1]),
+            VARIANCE_MAX * logistic(q[2]),
+            GAMMA_MAX * logistic(q[3]),
+            bounded_exp(q[4]),
+            bounded_exp(q[5]),
         ]
     }
 
     /// Derivatives of the six with respect to the solver's.
     fn chain(&self, q: &[f64]) -> [f64; PARAMETERS] {
+        let slope = |x: f64| logistic(x) * (1.0 - logistic(x));
         [
             self.options.shift_range * q[0].cos(),
-            q[1].exp(),
-            SAMPLE_SIGMA_MAX * SAMPLE_SIGMA_MAX * (2.0 * q[2]).sin(),
-            GAMMA_MAX * (2.0 * q[3]).sin(),
-            2.0 * q[4],
-            2.0 * q[5],
+            bounded_exp(q[1]),
+            VARIANCE_MAX * slope(q[2]),
+            GAMMA_MAX * slope(q[3]),
+            bounded_exp(q[4]),
+            bounded_exp(q[5]),
         ]
     }
 
@@ -497,6 +530,15 @@ impl EdgeProblem {
         let dof = (variances.len() - PARAMETERS) as f64;
         Normal::standard().sf((chi_square - dof) / spread)
     }
+}
+
+/// The exponential, kept finite.
+fn bounded_exp(x: f64) -> f64 {
+    x.min(80.0).exp()
+}
+
+fn logistic(x: f64) -> f64 {
+    1.0 / (1.0 + (-x).exp())
 }
 
 /// What data and model may be off by.

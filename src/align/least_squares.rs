@@ -1,7 +1,7 @@
 //! The link to the least-squares solver: a model, a misfit and a start give a solution.
 
 use levenberg_marquardt::{LeastSquaresProblem, LevenbergMarquardt};
-use nalgebra::{Cholesky, DMatrix, DVector, Dyn, Owned};
+use nalgebra::{Cholesky, DMatrix, DVector, Dyn, Owned, SVD};
 
 use super::misfit::Misfit;
 
@@ -108,7 +108,10 @@ pub(super) fn minimise<M: Model>(model: &M, weighing: Weighing<'_>, start: Vec<f
         weighing,
         parameters: DVector::from_vec(start),
     };
+    // A small first step: parameters are logarithms, and one leap to minus a million would blind the
+    // solver's measure of progress.
     let solver = LevenbergMarquardt::new()
+        .with_stepbound(0.3)
         .with_ftol(1e-10)
         .with_xtol(1e-8)
         .with_gtol(1e-10)
@@ -123,7 +126,7 @@ pub(super) fn minimise<M: Model>(model: &M, weighing: Weighing<'_>, start: Vec<f
 }
 
 /// Covariance of parameters from the derivatives of the weighted model, (J'J)^-1. A direction that
-/// the data do not bear at all is left out (pseudo-inverse).
+/// the data do not bear at all is left out (pseudo-inverse). Not a number where the model is not.
 pub(super) fn covariance(weighted: &DMatrix<f64>) -> DMatrix<f64> {
     let information = weighted.tr_mul(weighted);
     let n = information.nrows();
@@ -131,8 +134,12 @@ pub(super) fn covariance(weighted: &DMatrix<f64>) -> DMatrix<f64> {
         .map(|i| information[(i, i)].sqrt().max(f64::MIN_POSITIVE))
         .collect();
     let scaled = DMatrix::from_fn(n, n, |i, j| information[(i, j)] / (scale[i] * scale[j]));
-    let inverse = scaled
-        .pseudo_inverse(1e-13)
-        .unwrap_or_else(|_| DMatrix::zeros(n, n));
+    let unknown = || DMatrix::from_element(n, n, f64::NAN);
+    if scaled.iter().any(|x| !x.is_finite()) {
+        return unknown();
+    }
+    let inverse = SVD::try_new(scaled, true, true, f64::EPSILON, 500)
+        .and_then(|svd| svd.pseudo_inverse(1e-13).ok())
+        .unwrap_or_else(unknown);
     DMatrix::from_fn(n, n, |i, j| inverse[(i, j)] / (scale[i] * scale[j]))
 }

@@ -39,7 +39,7 @@ use super::bands::{Bands, KPoint};
 use super::events::{Background, Channels, MetalEdge, Secondaries, Widths, normal, spectrum};
 
 const DATA_K_POINTS: usize = 20_000;
-const TABLE_K_POINTS: usize = 600;
+const TABLE_K_POINTS: usize = 2_000;
 const PHOTON_ENERGY: f64 = 21.218;
 const WORK_FUNCTION: f64 = 4.37;
 /// The Boltzmann constant times 300 K, typed here on purpose: the generator borrows no constant.
