@@ -121,7 +121,7 @@ impl EdgeFit {
     /// Standard uncertainty of the shift.
     #[must_use]
     pub fn shift_uncertainty(&self) -> f64 {
-        self.covariance[(0, 0)].max(0.0).sqrt()
+        self.covariance[(0, 0)].sqrt()
     }
 
     /// Gaussian full width at half maximum, instrument and sample, and its standard uncertainty.
@@ -281,8 +281,11 @@ impl EdgeProblem {
     /// Brings a Poisson fit to the one that knows of the sampling, the covariance taken twice.
     fn finish(&self, mut solution: Solution, levels: Sampled<'_>) -> EdgeFit {
         let mut evaluations = solution.evaluations;
-        for _ in 0..2 {
-            let spread = self.spread(&self.natural(&solution.parameters), levels);
+        let mut spread = self.spread(&self.natural(&solution.parameters), levels);
+        for pass in 0..2 {
+            if pass > 0 {
+                spread = self.spread(&self.natural(&solution.parameters), levels);
+            }
             let weighing = Weighing::Correlated {
                 values: &self.values,
                 root: &spread.root,
@@ -290,7 +293,6 @@ impl EdgeProblem {
             solution = self.settle(weighing, solution.parameters);
             evaluations += solution.evaluations;
         }
-        let spread = self.spread(&self.natural(&solution.parameters), levels);
         EdgeFit {
             evaluations,
             ..self.report(&solution, &spread)

@@ -183,7 +183,17 @@ impl Fitter<'_> {
         let window = self.window(edge, instrument, (1.0, 1.0));
         let problem = self.problem(edge, window, instrument)?;
         let fit = problem.fit_from(&first, self.sampled());
-        Ok((problem, fit))
+        if fit.shift_uncertainty().is_finite() && fit.reduced_chi_square.is_finite() {
+            return Ok((problem, fit));
+        }
+        Err(self.refuse(
+            format!(
+                "the curve of {} does not determine the edge: the fit has no covariance",
+                self.input.spectrum.source.name()
+            ),
+            "the curve must hold the edge of the band with signal on one side and background on \
+             the other",
+        ))
     }
 
     fn sampled(&self) -> Sampled<'_> {
