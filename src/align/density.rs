@@ -1,15 +1,15 @@
 //! The broadened density of states and its running integral, with derivatives, exactly and fast.
 //!
-//! B(x) = sum_i w_i V(x - E_i; sigma, gamma). On a circle of circumference L the sum is a Fourier
-//! series, (1/L) sum_m F_m exp(i t_m x - sigma^2 t_m^2 / 2 - gamma |t_m|), t_m = 2 pi m / L,
-//! F_m = sum_i w_i exp(-i t_m E_i), which converges like a Gaussian. What the circle adds, the
+//! B(x) = `sum_i` `w_i` V(x - `E_i`; sigma, gamma). On a circle of circumference L the sum is a Fourier
+//! series, (1/L) `sum_m` `F_m` exp(i `t_m` x - sigma^2 `t_m^2` / 2 - gamma |`t_m`|), `t_m` = 2 pi m / L,
+//! `F_m` = `sum_i` `w_i` exp(-i `t_m` `E_i`), which converges like a Gaussian. What the circle adds, the
 //! periodic images at distances n L, is removed in closed form. Far from its centre a Voigt profile
 //! is -(1/pi) Im of exp((sigma^2/2) d^2/dz^2) (1/z), z = x + i gamma, and
 //!
 //!   sum_{n != 0} 1/(z - n L) = -2 sum_{k >= 1} zeta(2k) z^(2k-1) / L^(2k)   (|z| < L)
 //!
 //! so all images together are the imaginary part of one polynomial with real coefficients; levels
-//! too far for the series enter the same polynomial through 1/(z - E) = -(1/E) sum_j (z/E)^j. The
+//! too far for the series enter the same polynomial through 1/(z - E) = -(1/E) `sum_j` (z/E)^j. The
 //! heat operator acts on its coefficients, and shift, widths and integral act on it as derivatives
 //! and antiderivative. Gaussian tails of what is far away, below exp(-40), are left out.
 //!
@@ -137,7 +137,7 @@ impl Plan {
         }
     }
 
-    /// Minus all images: + 2 sum_k zeta(2k) (u - e)^(2k-1) / L with u = z/L, e = E/L, expanded in u.
+    /// Minus all images: + 2 `sum_k` zeta(2k) (u - e)^(2k-1) / L with u = z/L, e = E/L, expanded in u.
     fn remove_images(&mut self, moments: &[f64]) {
         for power in (1..=DEGREE).step_by(2) {
             let scale = 2.0 * zeta_even(power + 1) / self.period;
@@ -336,12 +336,11 @@ impl Operator {
         let i = Complex::new(0.0, 1.0);
         match self {
             Self::Identity => c,
-            Self::Integral if t == 0.0 => Complex::new(0.0, 0.0),
+            Self::Integral | Self::IntegralGamma if t == 0.0 => Complex::new(0.0, 0.0),
             Self::Integral => -i * c / t,
             Self::Shift => -i * c * t,
             Self::Variance => -0.5 * c * t * t,
             Self::Gamma => -c * t,
-            Self::IntegralGamma if t == 0.0 => Complex::new(0.0, 0.0),
             Self::IntegralGamma => i * c,
         }
     }

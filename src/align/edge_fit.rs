@@ -19,7 +19,7 @@
 //! The Fermi occupation is left out: it matters only where an edge lies within a few kT of the Fermi
 //! level.
 
-use nalgebra::{Cholesky, DMatrix, DVector, Dyn};
+use nalgebra::DMatrix;
 use statrs::distribution::{ContinuousCDF, Normal};
 
 use super::FWHM_PER_SIGMA;
@@ -27,7 +27,8 @@ use super::density::{Density, Derivatives, Domain, Plan, Sampler, Values};
 use super::least_squares::{Model, Solution, Weighing, covariance, minimise, whiten};
 use super::misfit::{Misfit, runs_probability};
 use super::noise::Noise;
-use super::sampling::{Deviations, Sampled};
+use super::sampling::Sampled;
+use super::spread::Spread;
 use super::window::Window;
 use crate::schema::Side;
 
@@ -40,7 +41,7 @@ const INADEQUATE: f64 = 1e-3;
 /// Where a bounded parameter starts that was at its bound, as a fraction of its range.
 const BARELY: f64 = 1e-3;
 /// Number of parameters.
-const PARAMETERS: usize = 6;
+pub(super) const PARAMETERS: usize = 6;
 
 /// What broadens a curve by known instrument.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -306,20 +307,14 @@ impl EdgeProblem {
         let variances: Vec<f64> = (0..model.len())
             .map(|i| misfit.variance(i, model[i]))
             .collect();
-        let deviations =
-            levels.deviations(&self.energies, self.options.side, self.density(p), p[1], p[5]);
-        let mut covariance = &deviations.model * deviations.model.transpose();
-        for (index, variance) in variances.iter().enumerate() {
-            covariance[(index, index)] += variance;
-        }
-        // Positive by its diagonal; rounding cannot change that.
-        let root = Cholesky::new_with_substitute(covariance, f64::MIN_POSITIVE.sqrt());
-        let fallback = || Cholesky::pack_dirty(DMatrix::identity(model.len(), model.len()));
-        Spread {
-            root: root.unwrap_or_else(fallback),
-            variances,
-            deviations,
-        }
+        let deviations = levels.deviations(
+            &self.energies,
+            self.options.side,
+            self.density(p),
+            p[1],
+            p[5],
+        );
+        Spread::new(variances, deviations)
     }
 
     fn start(&self, shift: f64, sigma: f64, gamma: f64) -> Vec<f64> {
@@ -444,27 +439,6 @@ impl EdgeProblem {
         (model, jacobian)
     }
 
-    /// One Newton step from the solution of the plain objective to that of the unbiased one: the six
-    /// parameters move by (J'V^-1 J)^-1 times half the gradient of tr(V^-1 C).
-    fn unbiased(&self, p: [f64; PARAMETERS], cov: &DMatrix<f64>, spread: &Spread) -> [f64; PARAMETERS] {
-        let Deviations { model, derivatives } = &spread.deviations;
-        let inverse = spread.root.solve(model);
-        let half = |derivative: &DMatrix<f64>| derivative.dot(&inverse);
-        let [shift, variance, gamma, step] = derivatives.each_ref().map(half);
-        let amplitude = model.dot(&inverse) / p[1];
-        let gradient =
-            DVector::from_column_slice(&[shift, amplitude, variance, gamma, 0.0, step]);
-        let move_by = cov * gradient;
-        let mut moved = p;
-        for (parameter, by) in moved.iter_mut().zip(move_by.iter()) {
-            *parameter += by;
-        }
-        for bounded in &mut moved[1..] {
-            *bounded = bounded.max(0.0);
-        }
-        moved
-    }
-
     fn report(&self, solution: &Solution, spread: &Spread) -> EdgeFit {
         let p = self.natural(&solution.parameters);
         let (model, jacobian) = self.model_and_derivatives(&p);
@@ -479,8 +453,8 @@ impl EdgeProblem {
         let runs_probability = runs_probability(residuals.as_slice());
         #[allow(clippy::cast_precision_loss)] // A number of channels.
         let reduced_chi_square = chi_square / degrees_of_freedom as f64;
-        let gains = self.gains(&cov, &weighted, spread);
-        let p = self.unbiased(p, &cov, spread);
+        let gains = spread.gains(&cov, &weighted);
+        let p = spread.unbiased(p, &cov);
         let inadequate = fit_probability < INADEQUATE || runs_probability < INADEQUATE;
         let inflation = if inadequate || matches!(self.noise, Noise::Variance(_)) {
             reduced_chi_square.max(1.0)
@@ -513,13 +487,6 @@ impl EdgeProblem {
         }
     }
 
-    /// How much the shift moves with each channel: the first row of (J'V^-1 J)^-1 J'V^-1.
-    fn gains(&self, cov: &DMatrix<f64>, weighted: &DMatrix<f64>, spread: &Spread) -> DVector<f64> {
-        let mut gains = weighted * cov.column(0);
-        spread.root.l_dirty().tr_solve_lower_triangular_mut(&mut gains);
-        gains
-    }
-
     /// Probability of as large a chi-square, by the normal law with its exact mean and variance for
     /// counts: a Pearson residual of a Poisson count has kurtosis 3 + 1/mu.
     fn fit_probability(&self, chi_square: f64, variances: &[f64]) -> f64 {
@@ -541,16 +508,6 @@ fn bounded_exp(x: f64) -> f64 {
 
 fn logistic(x: f64) -> f64 {
     1.0 / (1.0 + (-x).exp())
-}
-
-/// What data and model may be off by.
-struct Spread {
-    /// Root of the covariance of both together.
-    root: Cholesky<f64, Dyn>,
-    /// Variances of the data.
-    variances: Vec<f64>,
-    /// Deviations of the model by group of k-points.
-    deviations: Deviations,
 }
 
 impl Model for EdgeProblem {

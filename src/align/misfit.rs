@@ -1,7 +1,7 @@
 //! How far a model is from data: Poisson likelihood for counts, least squares otherwise.
 //!
 //! For counts n and a model mu the deviance 2 (mu - n + n ln(n/mu)) is twice the log-likelihood ratio
-//! against the saturated model (Cash, ApJ 228, 939 (1979)). Its signed root is a residual whose sum of
+//! against the saturated model (Cash, `ApJ` 228, 939 (1979)). Its signed root is a residual whose sum of
 //! squares is the statistic itself, so a least-squares solver minimises the likelihood exactly.
 
 use statrs::distribution::{ContinuousCDF, Normal};

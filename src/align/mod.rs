@@ -14,6 +14,7 @@ mod noise;
 mod replicas;
 mod sampling;
 mod scan;
+mod spread;
 mod tangent;
 mod voigt;
 mod window;

@@ -1,20 +1,20 @@
 //! Sampling of the Brillouin zone: what a table of few k-points leaves open in its density.
 //!
-//! The model of channel j is a sum over k-points, `mu_j` = sum_k `c_jk`. Had other k-points been drawn,
+//! The model of channel j is a sum over k-points, `mu_j` = `sum_k` `c_jk`. Had other k-points been drawn,
 //! it would differ; with points drawn at random the covariance of the model is estimated by
 //!
-//!   C = N/(N - 1) sum_k d_k d_k',   d_k = c_k - (w_k / sum w) mu,
+//!   C = N/(N - 1) `sum_k` `d_k` `d_k`',   `d_k` = `c_k` - (`w_k` / sum w) mu,
 //!
 //! (the jackknife of a weighted sum, in its infinitesimal form; Efron and Tibshirani, An Introduction
 //! to the Bootstrap (1993), chapter 11). Any estimate that is linear in the data by weights g then
-//! carries the influence g'd_k of each k-point, whose squares add to its sampling variance; two
+//! carries the influence g'`d_k` of each k-point, whose squares add to its sampling variance; two
 //! estimates from the same k-points share them.
 //!
 //! A model that is off by sampling has derivatives that are off by it too, and the two go together: a
 //! plain fit broadens the density too much, since that smooths the lumps of few k-points, and moves
 //! the edge with it. The expected chi-square of the sampling alone, tr(V^-1 C), shrinks with the
 //! broadening; a fit to the unbiased objective subtracts it (corrected score; Nakamura, Biometrika 77,
-//! 127 (1990)). Its gradient is 2 sum_k (dd_k/dp)' V^-1 d_k.
+//! 127 (1990)). Its gradient is 2 `sum_k` (`dd_k/dp`)' V^-1 `d_k`.
 //!
 //! A regular grid does better than random points, so
 //! for it the estimate errs on the large side.
@@ -276,6 +276,10 @@ mod tests {
         let n = f64::from(tables);
         let spread = squares / n - (sum / n).powi(2);
         // The channels are few, so the trapezoid is coarse, but it is the same on both sides.
-        assert!((claimed / n / spread - 1.0).abs() < 0.25, "{} {spread}", claimed / n);
+        assert!(
+            (claimed / n / spread - 1.0).abs() < 0.25,
+            "{} {spread}",
+            claimed / n
+        );
     }
 }

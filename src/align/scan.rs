@@ -91,12 +91,12 @@ fn weights(misfit: Misfit<'_>) -> Vec<f64> {
         .collect()
 }
 
-fn grid(start: f64, stop: f64, step: f64) -> Vec<f64> {
+fn grid(start: f64, stop: f64, spacing: f64) -> Vec<f64> {
     // A count of grid points is positive and small.
     #[allow(clippy::cast_possible_truncation, clippy::cast_sign_loss)]
-    let intervals = ((stop - start) / step).ceil().clamp(1.0, 1e6) as u32;
+    let intervals = ((stop - start) / spacing).ceil().clamp(1.0, 1e6) as u32;
     (0..=intervals)
-        .map(|i| start + step * f64::from(i))
+        .map(|i| start + spacing * f64::from(i))
         .collect()
 }
 

@@ -99,7 +99,10 @@ mod tests {
             ];
             assert!((value - voigt(x, sigma, gamma)).abs() < 1e-13);
             for (got, want) in [by_x, by_variance, by_gamma].iter().zip(wanted) {
-                assert!((got - want).abs() < 1e-6 * (1.0 + want.abs()), "{got} {want}");
+                assert!(
+                    (got - want).abs() < 1e-6 * (1.0 + want.abs()),
+                    "{got} {want}"
+                );
             }
         }
     }

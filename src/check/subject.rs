@@ -87,19 +87,19 @@ impl<'a> Subject<'a> {
     pub fn finding(
         &self,
         rule: &dyn Rule,
-        (row, role): (usize, Role),
+        at: (usize, Role),
         message: String,
         evidence: String,
         remedy: impl Into<String>,
     ) -> Finding {
-        let place = self.place(row, role);
+        let place = self.place(at.0, at.1);
         Finding {
             rule: rule.name().to_owned(),
             severity: rule.severity(),
             file: self.file().to_owned(),
             line: place.as_ref().map_or(1, |place| place.line),
             column: place.as_ref().map_or(1, |place| place.column),
-            field: self.field(role),
+            field: self.field(at.1),
             message,
             evidence,
             remedy: remedy.into(),

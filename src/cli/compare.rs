@@ -1,7 +1,8 @@
 //! `bandrule compare`.
 
 use std::collections::BTreeSet;
-use std::io::Write;
+use std::fmt::Write as _;
+use std::io::Write as _;
 use std::path::{Path, PathBuf};
 
 use clap::Args;
@@ -143,9 +144,10 @@ fn report(arguments: &Arguments, folders: &[PathBuf], results: &[ResultDocument]
     } else {
         for (result, folder) in results.iter().zip(folders) {
             text += &export::summary(result);
-            text += &format!("\nWritten to {}: ", folder.display());
             let files: Vec<&str> = result.files.iter().map(|file| file.file.as_str()).collect();
-            text += &format!("{}, result.json\n", files.join(", "));
+            let (folder, files) = (folder.display(), files.join(", "));
+            // Writing to a string cannot fail.
+            let _ = writeln!(text, "\nWritten to {folder}: {files}, result.json");
         }
     }
     let findings: Vec<Finding> = results.iter().flat_map(|r| r.findings.clone()).collect();

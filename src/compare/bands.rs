@@ -50,24 +50,28 @@ pub(super) fn bands(levels: &Validated<Levels>, section: &ComputedSection) -> Re
     };
     let points = k_points(document);
     let split = |wanted: bool| -> SideLevels {
-        let rows: Vec<usize> = (0..document.rows).filter(|&r| occupied[r] == wanted).collect();
+        let rows: Vec<usize> = (0..document.rows)
+            .filter(|&r| occupied[r] == wanted)
+            .collect();
         SideLevels {
             energies: rows.iter().map(|&r| energies[r]).collect(),
             weights: rows.iter().map(|&r| document.weight_of(r)).collect(),
-            points: points.as_ref().map_or_else(Vec::new, |points| {
-                rows.iter().map(|&r| points[r]).collect()
-            }),
+            points: points
+                .as_ref()
+                .map_or_else(Vec::new, |points| rows.iter().map(|&r| points[r]).collect()),
         }
     };
     check_reference(levels, section, energies[highest], &occupied)?;
     let gap = energies[lowest] - energies[highest];
-    let positive = |gap: f64| (gap > 0.0).then(|| Quantity::unstated(gap));
+    if gap <= 0.0 {
+        return Err(overlap(levels, (highest, lowest), energies, role).into());
+    }
     let record = Computed {
-        gap: positive(gap),
+        gap: Some(Quantity::unstated(gap)),
         direct_gap: points
             .as_ref()
             .and_then(|points| direct_gap(document, energies, &occupied, points))
-            .and_then(positive),
+            .map(Quantity::unstated),
         corrected_gap: None,
         spin_gaps: spin_gaps(document, energies, &occupied),
         valence_edge: location(levels, highest, energies[highest], role),
@@ -172,6 +176,32 @@ fn one_sided(levels: &Validated<Levels>, occupied: &[bool]) -> Problem {
     match place {
         Some(place) => problem.at(place),
         None => problem,
+    }
+}
+
+/// Levels whose lowest empty one lies below the highest occupied one.
+fn overlap(
+    levels: &Validated<Levels>,
+    (highest, lowest): (usize, usize),
+    energies: &[f64],
+    role: Role,
+) -> Problem {
+    let problem = Problem::new(format!(
+        "the computed levels have no gap: the lowest empty one ({:.4} eV) is not above the highest \
+         occupied one ({:.4} eV)",
+        energies[lowest], energies[highest]
+    ))
+    .with_help(
+        "a comparison of gaps needs one; check the occupations, or the two levels named here",
+    );
+    match (
+        levels.place_of(lowest, role),
+        levels.place_of(highest, role),
+    ) {
+        (Some(low), Some(high)) => problem
+            .at(low)
+            .with_related(high, "the highest occupied level"),
+        _ => problem,
     }
 }
 
@@ -343,8 +373,6 @@ fn reordered(levels: &Levels, points: Option<&[usize]>, occupied: &[bool]) -> us
             full.into_iter()
                 .flat_map(move |v| empty.clone().into_iter().map(move |c| (v, c)))
         })
-        .filter(|&(v, c)| {
-            mean_field[v] <= mean_field[c] && quasiparticle[v] > quasiparticle[c]
-        })
+        .filter(|&(v, c)| mean_field[v] <= mean_field[c] && quasiparticle[v] > quasiparticle[c])
         .count()
 }

@@ -23,6 +23,7 @@ pub struct Cause {
     valence: f64,
     conduction: f64,
     computed: f64,
+    correction: f64,
     /// The standard uncertainty of the gap, where the two edges are neither independent nor bound.
     joint_gap: Option<f64>,
     degrees_of_freedom: Option<f64>,
@@ -39,6 +40,7 @@ impl Cause {
             valence: 0.0,
             conduction: 0.0,
             computed: 0.0,
+            correction: 0.0,
             joint_gap: None,
             degrees_of_freedom: None,
             stated: uncertainty.is_some(),
@@ -65,9 +67,23 @@ impl Cause {
         cause
     }
 
+    /// A cause that moves what is added to the computed gap.
+    #[must_use]
+    pub fn of_correction(name: String, uncertainty: Option<f64>, basis: String) -> Self {
+        let mut cause = Self::new(name, uncertainty, basis);
+        cause.correction = uncertainty.unwrap_or(0.0);
+        cause
+    }
+
     /// A cause that moves both edges with a covariance of its own.
     #[must_use]
-    pub fn of_both_edges(name: String, valence: f64, conduction: f64, gap: f64, basis: String) -> Self {
+    pub fn of_both_edges(
+        name: String,
+        valence: f64,
+        conduction: f64,
+        gap: f64,
+        basis: String,
+    ) -> Self {
         let mut cause = Self::new(name, Some(gap), basis);
         cause.valence = valence;
         cause.conduction = conduction;
@@ -106,7 +122,11 @@ impl Cause {
     }
 
     fn difference(&self) -> f64 {
-        self.computed.hypot(self.gap())
+        self.corrected().hypot(self.gap())
+    }
+
+    fn corrected(&self) -> f64 {
+        self.computed.hypot(self.correction)
     }
 
     fn row(&self) -> BudgetRow {
@@ -133,7 +153,10 @@ pub struct Budget {
 impl Budget {
     /// Adds a cause. One that shares its identity with an earlier one joins it.
     pub fn add(&mut self, cause: Cause) {
-        let known = self.causes.iter_mut().find(|c| c.identity == cause.identity);
+        let known = self
+            .causes
+            .iter_mut()
+            .find(|c| c.identity == cause.identity);
         match known {
             Some(known) => {
                 known.valence += cause.valence;
@@ -169,8 +192,18 @@ impl Budget {
     /// The computed gap with what is stated of it.
     #[must_use]
     pub fn computed_gap(&self, value: f64) -> Quantity {
-        if self.causes.iter().any(|c| c.computed != 0.0) {
-            self.quantity(value, |cause| cause.computed)
+        self.where_stated(value, |cause| cause.computed)
+    }
+
+    /// The computed gap with the study's corrections added.
+    #[must_use]
+    pub fn corrected_gap(&self, value: f64) -> Quantity {
+        self.where_stated(value, Cause::corrected)
+    }
+
+    fn where_stated(&self, value: f64, part: impl Fn(&Cause) -> f64) -> Quantity {
+        if self.causes.iter().any(|cause| part(cause) != 0.0) {
+            self.quantity(value, part)
         } else {
             Quantity::unstated(value)
         }
@@ -231,7 +264,8 @@ mod tests {
     fn what_moves_both_edges_alike_leaves_the_gap() {
         let mut budget = Budget::default();
         for side in [Side::Valence, Side::Conduction] {
-            let cause = Cause::of_edge(format!("edge of {side:?}"), side, Some(0.05), String::new());
+            let cause =
+                Cause::of_edge(format!("edge of {side:?}"), side, Some(0.05), String::new());
             budget.add(cause.shared_as("one metal".to_owned()));
         }
         assert_eq!(budget.rows().len(), 1);

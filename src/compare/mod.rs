@@ -6,6 +6,8 @@
 
 mod bands;
 mod budget;
+mod cautions;
+mod drawn;
 mod error;
 mod inputs;
 mod outcome;

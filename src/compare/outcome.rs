@@ -2,24 +2,20 @@
 
 use super::bands::{Bands, bands};
 use super::budget::{Budget, Cause};
+use super::cautions::cautions;
+use super::drawn::{drawn, fit_record};
 use super::error::Error;
 use super::inputs::{Inputs, read};
 use super::scale::scale;
 use super::side::{Computed, SideResult, side};
 use super::study::{Protocol, Study};
 use super::verdict::{Grounds, en_score, verdict};
-use crate::align::{
-    Density, Domain, Groups, Plan, Sampler,
-};
+use crate::align::Groups;
 use crate::quantity::{Reference, rounded};
 use crate::schema::{
-    Alternative, Caution, Curves, DensityCurve, Document, Expanded, FitRecord, Measured,
-    ProtocolEdge, ProtocolRecord, Provenance, Quantity, ResultDocument, Shift, Side, SideCurve,
-    Verdict,
+    Caution, Curves, Document, Expanded, Measured, ProtocolEdge, ProtocolRecord, Provenance,
+    Quantity, ResultDocument, Shift, Side, Verdict,
 };
-
-/// Deviance over the dispersion within which another minimum competes: a likelihood ratio of 1/1800.
-const COMPETING: f64 = 15.0;
 
 /// A comparison.
 #[derive(Debug, Clone, PartialEq)]
@@ -131,8 +127,8 @@ impl Comparison<'_> {
         let mut computed = self.bands.record.clone();
         computed.gap = computed.gap.map(|gap| budget.computed_gap(gap.value));
         let corrected = computed.gap.map(|gap| self.corrected(gap.value));
-        computed.corrected_gap = corrected.map(|gap| self.with_corrections(&budget, gap));
-        let cautions = self.cautions(&measured);
+        computed.corrected_gap = corrected.map(|gap| budget.corrected_gap(gap));
+        let cautions = cautions(self.sides, self.reference(), &measured);
         let expanded = budget.difference();
         let compared = measured.gap.zip(corrected).map(|(m, c)| c - m.value);
         let verdict = self.verdict(compared, &expanded, &cautions);
@@ -166,10 +162,6 @@ impl Comparison<'_> {
         gap + parts.map(|c| c.sign * c.stated.value).sum::<f64>()
     }
 
-    fn with_corrections(&self, budget: &Budget, gap: f64) -> Quantity {
-        budget.computed_gap(gap)
-    }
-
     fn budget(&self) -> Budget {
         let mut budget = Budget::default();
         for side in self.sides {
@@ -177,7 +169,7 @@ impl Comparison<'_> {
             for cause in &side.causes {
                 budget.add(cause.clone());
             }
-            budget.add(self.protocol(side));
+            budget.add(Self::protocol(side));
         }
         budget.add(self.sampling());
         for (name, stated) in &self.study.computed.uncertainty {
@@ -187,13 +179,21 @@ impl Comparison<'_> {
         }
         if self.study.computed.uncertainty.is_empty() {
             let basis = "not stated: add [computed.uncertainty]".to_owned();
-            budget.add(Cause::of_computed_gap("computed gap".to_owned(), None, basis));
+            budget.add(Cause::of_computed_gap(
+                "computed gap".to_owned(),
+                None,
+                basis,
+            ));
         }
         for correction in &self.study.corrections {
             let stated = &correction.stated;
             let basis = format!("{}:{}", stated.place.file, stated.place.line);
             let name = format!("{}, correction", correction.name.replace('_', " "));
-            budget.add(Cause::of_computed_gap(name, stated.standard_uncertainty, basis));
+            budget.add(Cause::of_correction(
+                name,
+                stated.standard_uncertainty,
+                basis,
+            ));
         }
         budget
     }
@@ -210,11 +210,16 @@ impl Comparison<'_> {
     fn statistics(&self, side: &SideResult) -> Cause {
         let u = match self.headline() {
             Protocol::DensityFit => Some(side.fit.noise_variance.sqrt()),
-            Protocol::Tangent => Self::edge_of(side, Protocol::Tangent)
-                .map(|edge| edge.edge.uncertainty_or_zero()),
+            Protocol::Tangent => {
+                Self::edge_of(side, Protocol::Tangent).map(|edge| edge.edge.uncertainty_or_zero())
+            }
         };
         let degrees = f64::from(u32::try_from(side.fit.degrees_of_freedom).unwrap_or(u32::MAX));
-        let basis = format!("{} of {} channels", self.headline().name(), side.fit.channels);
+        let basis = format!(
+            "{} of {} channels",
+            self.headline().name(),
+            side.fit.channels
+        );
         let name = format!("counting statistics, {}", side.side.technique());
         let cause = Cause::of_edge(name, side.side, u, basis);
         match side.curve.statistics {
@@ -225,15 +230,14 @@ impl Comparison<'_> {
 
     /// What two protocols differ by beyond their own uncertainties, as a rectangular distribution of
     /// that half width.
-    fn protocol(&self, side: &SideResult) -> Cause {
+    fn protocol(side: &SideResult) -> Cause {
         let edges: Vec<Quantity> = side.edges.iter().map(|(_, edge)| edge.edge).collect();
         let name = format!("protocol, {}", side.side.technique());
         let [first, second] = edges.as_slice() else {
             let basis = "one protocol only: nothing to hold it against".to_owned();
             return Cause::of_edge(name, side.side, None, basis);
         };
-        let noise = first.uncertainty_or_zero().powi(2)
-            + second.uncertainty_or_zero().powi(2);
+        let noise = first.uncertainty_or_zero().powi(2) + second.uncertainty_or_zero().powi(2);
         let excess = ((first.value - second.value).powi(2) - noise).max(0.0);
         let basis = format!(
             "protocols differ by {:.3} eV, {:.3} eV expected of noise",
@@ -246,7 +250,10 @@ impl Comparison<'_> {
     /// Sampling of the Brillouin zone, jointly for both edges.
     fn sampling(&self) -> Cause {
         let name = "sampling of the Brillouin zone".to_owned();
-        let of = |side: Side| self.side(side).map_or(&[][..], |result| &result.fit.influence);
+        let of = |side: Side| {
+            self.side(side)
+                .map_or(&[][..], |result| &result.fit.influence)
+        };
         let (valence, conduction) = (of(Side::Valence), of(Side::Conduction));
         let groups = valence.len().max(conduction.len());
         if groups == 0 {
@@ -272,7 +279,11 @@ impl Comparison<'_> {
     fn protocols(&self) -> Vec<ProtocolRecord> {
         let tied = self.is_tied();
         let record = |&protocol: &Protocol| {
-            let edge = |side| self.side(side).and_then(|s| Self::edge_of(s, protocol)).cloned();
+            let edge = |side| {
+                self.side(side)
+                    .and_then(|s| Self::edge_of(s, protocol))
+                    .cloned()
+            };
             let (valence, conduction) = (edge(Side::Valence), edge(Side::Conduction));
             let apart = |part: fn(&ProtocolEdge) -> Quantity| {
                 let (v, c) = (part(valence.as_ref()?), part(conduction.as_ref()?));
@@ -346,9 +357,7 @@ impl Comparison<'_> {
     }
 
     fn why_no_difference(&self) -> &'static str {
-        if self.bands.record.gap.is_none() {
-            "the computed levels have no gap, the lowest empty one lies below the highest occupied one"
-        } else if self.sides.len() < 2 {
+        if self.sides.len() < 2 {
             "a gap needs both photoemission and inverse photoemission; the study names one of them"
         } else if !self.is_tied() {
             "the two measured sides are not tied to one reference; state reference = \"fermi\" for \
@@ -358,30 +367,14 @@ impl Comparison<'_> {
         }
     }
 
-    fn cautions(&self, measured: &Measured) -> Vec<Caution> {
-        let mut list = Vec::new();
-        for side in self.sides {
-            side_cautions(side, &mut list);
-        }
-        let outside = |edge: Option<Quantity>, sign: f64| edge.is_some_and(|e| sign * e.value > 0.0);
-        if self.reference() == Reference::Fermi
-            && (outside(measured.valence_edge, 1.0) || outside(measured.conduction_edge, -1.0))
-        {
-            list.push(Caution {
-                name: "fermi-outside-gap".to_owned(),
-                message: "the Fermi level lies outside the measured gap: check the calibration of \
-                          both sides, charging, and that both were taken from one surface"
-                    .to_owned(),
-            });
-        }
-        list
-    }
-
     fn steps(&self, provenance: &mut Provenance) {
         for correction in &self.study.corrections {
             provenance.step(
                 format!("correction {}", correction.name),
-                format!("{} eV on the computed gap", correction.sign * correction.stated.value),
+                format!(
+                    "{} eV on the computed gap",
+                    correction.sign * correction.stated.value
+                ),
             );
         }
         for side in self.sides {
@@ -404,141 +397,9 @@ impl Comparison<'_> {
     fn curves(&self) -> Curves {
         let drawn = self.sides.iter().map(|side| {
             let (levels, _) = self.bands.side(side.side);
-            drawn(side, &levels.energies, &levels.weights)
+            drawn(side, levels)
         });
         let (sides, densities) = drawn.unzip();
         Curves { sides, densities }
     }
-}
-
-fn fit_record(side: &SideResult) -> FitRecord {
-    let fit = &side.fit;
-    let (gaussian, gaussian_u) = fit.gaussian_fwhm();
-    let (lorentzian, lorentzian_u) = fit.lorentzian_fwhm();
-    FitRecord {
-        side: side.side,
-        shift: Quantity::new(fit.shift, fit.shift_uncertainty()),
-        gaussian_fwhm: Quantity::new(gaussian, gaussian_u),
-        lorentzian_fwhm: Quantity::new(lorentzian, lorentzian_u),
-        window_start_ev: fit.window.start,
-        window_stop_ev: fit.window.stop,
-        channels: fit.channels,
-        degrees_of_freedom: fit.degrees_of_freedom,
-        statistics: side.curve.statistics.to_owned(),
-        reduced_chi_square: fit.reduced_chi_square,
-        runs_probability: fit.runs_probability,
-        evaluations: fit.evaluations,
-        converged: fit.converged,
-        alternatives: competing(side),
-    }
-}
-
-fn competing(side: &SideResult) -> Vec<Alternative> {
-    let others = side.alignment.alternatives.iter();
-    others
-        .filter(|(_, above)| *above < COMPETING)
-        .map(|&(shift_ev, deviance_above_best)| Alternative {
-            shift_ev,
-            deviance_above_best,
-        })
-        .collect()
-}
-
-fn side_cautions(side: &SideResult, list: &mut Vec<Caution>) {
-    let technique = side.side.technique();
-    let mut caution = |name: &str, message: String| {
-        list.push(Caution {
-            name: name.to_owned(),
-            message: format!("{technique}: {message}"),
-        });
-    };
-    let fit = &side.fit;
-    if fit.is_inadequate() || !fit.converged {
-        caution(
-            "model-inadequate",
-            format!(
-                "the fitted model misses the curve by more than noise (reduced chi-square {:.2}, \
-                 runs test {:.1e}{}); look at the residuals before you trust the edge",
-                fit.reduced_chi_square,
-                fit.runs_probability,
-                if fit.converged { "" } else { ", not converged" }
-            ),
-        );
-    }
-    let others = competing(side);
-    if !others.is_empty() {
-        let shifts: Vec<String> = others.iter().map(|a| format!("{:.2}", a.shift_ev)).collect();
-        caution(
-            "alignment-ambiguous",
-            format!("shifts of {} eV fit nearly as well", shifts.join(", ")),
-        );
-    }
-    let near = 1.5 * fit.gaussian_fwhm().0;
-    let edge = side.computed_edge + fit.shift;
-    let ends = side.curve.energies.first().zip(side.curve.energies.last());
-    if ends.is_some_and(|(first, last)| edge - first < near || last - edge < near) {
-        caution(
-            "edge-near-window-end",
-            format!("the edge lies within {near:.2} eV of the end of the curve; measure farther"),
-        );
-    }
-}
-
-/// The curves of one side over the whole measured range.
-fn drawn(side: &SideResult, energies: &[f64], weights: &[f64]) -> (SideCurve, DensityCurve) {
-    let fit = &side.fit;
-    let curve = &side.curve;
-    let points = &curve.energies;
-    let (first, last) = (points[0], points[points.len() - 1]);
-    let domain = Domain {
-        centre: 0.5 * (first + last) - fit.shift,
-        half_width: 0.5 * (last - first) + 0.1,
-        sigma_min: fit.total_variance.sqrt(),
-        sigma_max: fit.total_variance.sqrt(),
-    };
-    let plan = Plan::new(energies, weights, domain);
-    let at = Density {
-        shift: fit.shift,
-        variance: fit.total_variance,
-        gamma: fit.gamma,
-    };
-    let values = Sampler::new(points, &plan).values(&plan, at);
-    let gap_end = match side.side {
-        Side::Valence => fit.window.indices(points).end.saturating_sub(1),
-        Side::Conduction => fit.window.indices(points).start,
-    };
-    let zero = values.integral[gap_end];
-    let primary = values.integral.iter().map(|x| match side.side {
-        Side::Valence => (zero - x).max(0.0),
-        Side::Conduction => (x - zero).max(0.0),
-    });
-    let background: Vec<f64> = primary
-        .map(|p| fit.constant + fit.amplitude * fit.step * p)
-        .collect();
-    let density: Vec<f64> = values.density.iter().map(|d| fit.amplitude * d).collect();
-    let model: Vec<f64> = background.iter().zip(&density).map(|(b, d)| b + d).collect();
-    let misfit = crate::align::Misfit {
-        values: &curve.values,
-        noise: &curve.noise,
-    };
-    let standard_uncertainty = (0..model.len())
-        .map(|i| misfit.variance(i, curve.values[i].max(1.0)).sqrt())
-        .collect();
-    let part = DensityCurve {
-        side: side.side,
-        energy_ev: points.clone(),
-        density,
-    };
-    let whole = SideCurve {
-        side: side.side,
-        intensity_unit: curve.unit,
-        energy_ev: points.clone(),
-        measured: curve.values.clone(),
-        standard_uncertainty,
-        residual: misfit.standardised(&model),
-        model,
-        background,
-        window_ev: (fit.window.start, fit.window.stop),
-    };
-    (whole, part)
 }

@@ -1,11 +1,11 @@
 //! From a measured axis to energies against a common reference, with what that costs in uncertainty.
 //!
-//! Photoemission, kinetic axis from the analyser's vacuum level:
-//!   E - `E_F` = `E_kin` + phi + e V - h nu,
-//! with V the potential of the sample against the spectrometer: a sample at -5 V pushes its electrons
-//! to kinetic energies 5 eV higher. From the sample's vacuum level: E - `E_F` = `E_kin` + `phi_sample`
-//! - h nu; from the Fermi level: E - `E_F` = `E_kin` - h nu. A metal's Fermi edge on the same axis
+//! Photoemission, kinetic axis from the analyser's vacuum level: E - `E_F` = `E_kin` + phi +
+//! e V - h nu, with V the potential of the sample against the spectrometer: a sample at -5 V pushes its electrons
+//! to kinetic energies 5 eV higher. from the sample's vacuum level: E - `E_F` = `E_kin` + `phi_sample` minus
+//! h nu; from the Fermi level: E - `E_F` = `E_kin` - h nu. A metal's Fermi edge on the same axis
 //! supersedes all of these. Binding axis: E = -`E_B`.
+//!
 //! Inverse photoemission, isochromat: E - `E_F` = e U + `phi_cathode` + 2 k `T_cathode` - h nu.
 
 use super::budget::Cause;
@@ -96,7 +96,8 @@ fn add_offset(input: &SideInput, scale: &mut Scale) {
             format!("calibration of the axis, {}", input.side.technique()),
             input.side,
             None,
-            "not stated: give energy_offset with a standard_uncertainty, or a metal edge".to_owned(),
+            "not stated: give energy_offset with a standard_uncertainty, or a metal edge"
+                .to_owned(),
         ));
     }
 }
@@ -188,9 +189,12 @@ fn cathode_zero(input: &SideInput, scale: &mut Scale) -> Result<(), Problem> {
         let thermal = Temperature::from_kelvin(temperature.value).thermal_energy();
         scale.offset += 2.0 * thermal;
         let sensitivity = 2.0 * thermal / temperature.value;
-        scale
-            .causes
-            .push(cause(input, "cathode temperature", temperature, sensitivity));
+        scale.causes.push(cause(
+            input,
+            "cathode temperature",
+            temperature,
+            sensitivity,
+        ));
     } else {
         return Err(kinetic_needs(
             input,
@@ -216,11 +220,7 @@ fn kinetic_needs(input: &SideInput, key: &str) -> Problem {
 }
 
 /// The scale from a metal's Fermi edge, checked against a work function where both are there.
-fn from_metal(
-    input: &SideInput,
-    metal: &Validated<Spectrum>,
-    sign: f64,
-) -> Result<Scale, Problem> {
+fn from_metal(input: &SideInput, metal: &Validated<Spectrum>, sign: f64) -> Result<Scale, Problem> {
     let spectrum = &input.spectrum.document;
     if metal.document.axis != spectrum.axis {
         return Err(at_energy_header(
@@ -257,11 +257,11 @@ fn from_metal(
 }
 
 fn fitted(input: &SideInput, metal: &Validated<Spectrum>, sign: f64) -> Result<MetalEdge, Problem> {
-    let temperature = metal
-        .document
-        .conditions
-        .temperature_k
-        .or(input.section.temperature.as_ref().map(|t| t.value));
+    let temperature = metal.document.conditions.temperature_k.or(input
+        .section
+        .temperature
+        .as_ref()
+        .map(|t| t.value));
     let Some(temperature) = temperature else {
         return Err(at_energy_header(
             Problem::new("the temperature of the metal is not stated"),
@@ -271,7 +271,13 @@ fn fitted(input: &SideInput, metal: &Validated<Spectrum>, sign: f64) -> Result<M
     };
     let curve = Curve::new(&metal.document, sign, 0.0, None);
     let thermal = Temperature::from_kelvin(temperature).thermal_energy();
-    let edge = fit_metal_edge(&curve.energies, &curve.values, &curve.noise, thermal, input.side);
+    let edge = fit_metal_edge(
+        &curve.energies,
+        &curve.values,
+        &curve.noise,
+        thermal,
+        input.side,
+    );
     edge.filter(|edge| edge.converged && edge.position_uncertainty.is_finite())
         .ok_or_else(|| {
             let what = match input.side {
@@ -282,7 +288,9 @@ fn fitted(input: &SideInput, metal: &Validated<Spectrum>, sign: f64) -> Result<M
                 Problem::new("no Fermi edge could be fitted to the metal's curve"),
                 metal,
             )
-            .with_help(format!("give a curve of at least twelve channels that {what}"))
+            .with_help(format!(
+                "give a curve of at least twelve channels that {what}"
+            ))
         })
 }
 
@@ -341,7 +349,11 @@ impl Curve {
     /// Puts a document on the common scale. `seconds` is dwell time times sweeps, where known: rates
     /// become counts where that gives whole numbers.
     pub(super) fn new(spectrum: &Spectrum, sign: f64, offset: f64, seconds: Option<f64>) -> Self {
-        let axis: Vec<f64> = spectrum.energy_ev.iter().map(|e| sign * e + offset).collect();
+        let axis: Vec<f64> = spectrum
+            .energy_ev
+            .iter()
+            .map(|e| sign * e + offset)
+            .collect();
         let descending = axis.first() > axis.last();
         let ordered = |list: &[f64]| -> Vec<f64> {
             if descending {

@@ -8,10 +8,12 @@ use super::scale::{Curve, Scale};
 use super::study::{ComparisonSection, Protocol};
 use crate::align::{
     Alignment, EdgeFit, EdgeFitOptions, EdgeProblem, FWHM_PER_SIGMA, Groups, Instrument, Misfit,
-    Noise, ReplicaBias, Sampled, Tangent, TangentOptions, Window, scan, tangent, tangent_bias, voigt_fwhm,
+    Noise, ReplicaBias, Sampled, Tangent, TangentOptions, Window, scan, tangent, tangent_bias,
+    voigt_fwhm,
 };
 use crate::parse::{Problem, Role};
-use crate::schema::{ProtocolEdge, Quantity, Side};
+use crate::quantity::Temperature;
+use crate::schema::{Conditions, ProtocolEdge, Quantity, Side};
 
 /// How far a fit may move from where it starts, eV.
 const SHIFT_RANGE: f64 = 0.8;
@@ -19,6 +21,8 @@ const SHIFT_RANGE: f64 = 0.8;
 const REPLICAS: usize = 200;
 /// Resolution that windows are chosen by where none is known, eV.
 const USUAL_FWHM: f64 = 0.3;
+/// Temperature of a sample of which none is stated, K.
+const ROOM: f64 = 300.0;
 /// Windows by which the choice is judged: factors on depth and on the gap side.
 const OTHER_WINDOWS: [(f64, f64); 3] = [(0.7, 1.0), (1.4, 1.0), (1.0, 0.6)];
 
@@ -33,6 +37,9 @@ pub(super) struct SideResult {
     pub alignment: Alignment,
     pub edges: Vec<(Protocol, ProtocolEdge)>,
     pub causes: Vec<Cause>,
+    pub angle_resolved: bool,
+    /// Thermal energy kT of the sample, eV; at room temperature where none is stated.
+    pub thermal: f64,
 }
 
 /// The levels of one side with the groups of their k-points.
@@ -67,6 +74,7 @@ pub(super) fn side(
     let (problem, fit) = fitter.fit(alignment.shift + computed.edge, instrument)?;
     let edges = fitter.edges(&problem, &fit);
     let causes = fitter.causes(&scale, &fit, instrument);
+    let temperature = section.temperature.as_ref().map_or(ROOM, |t| t.value);
     Ok(SideResult {
         side: input.side,
         computed_edge: computed.edge,
@@ -74,9 +82,17 @@ pub(super) fn side(
         alignment,
         edges,
         causes,
+        angle_resolved: is_angle_resolved(&input.spectrum.document.conditions),
+        thermal: Temperature::from_kelvin(temperature).thermal_energy(),
         curve,
         scale,
     })
+}
+
+fn is_angle_resolved(conditions: &Conditions) -> bool {
+    let technique = conditions.technique.as_deref().unwrap_or("").to_lowercase();
+    let words = ["angle-resolved", "angle resolved", "arpes", "arups"];
+    words.iter().any(|word| technique.contains(word))
 }
 
 /// The instrument's Gaussian: stated, else as fitted to the metal, else not known.
@@ -105,7 +121,10 @@ impl Fitter<'_> {
     }
 
     fn levels(&self) -> (&[f64], &[f64]) {
-        (&self.computed.levels.energies, &self.computed.levels.weights)
+        (
+            &self.computed.levels.energies,
+            &self.computed.levels.weights,
+        )
     }
 
     /// Where on the whole curve the levels fit best.
@@ -124,7 +143,15 @@ impl Fitter<'_> {
             stop: last - self.computed.edge,
         };
         let side = self.input.side;
-        scan(self.levels(), energies, misfit, side, instrument.sigma, range).ok_or_else(|| {
+        scan(
+            self.levels(),
+            energies,
+            misfit,
+            side,
+            instrument.sigma,
+            range,
+        )
+        .ok_or_else(|| {
             self.refuse(
                 format!("nothing in {name} looks like the broadened levels at any shift"),
                 "the curve must hold the edge of the band, rising out of a background",
@@ -153,7 +180,12 @@ impl Fitter<'_> {
         }
     }
 
-    fn problem(&self, edge: f64, window: Window, instrument: Instrument) -> Result<EdgeProblem, Problem> {
+    fn problem(
+        &self,
+        edge: f64,
+        window: Window,
+        instrument: Instrument,
+    ) -> Result<EdgeProblem, Problem> {
         let options = EdgeFitOptions {
             side: self.input.side,
             window,
@@ -162,17 +194,23 @@ impl Fitter<'_> {
             instrument,
         };
         let curve = self.curve;
-        EdgeProblem::new(self.levels(), &curve.energies, &curve.values, &curve.noise, options)
-            .ok_or_else(|| {
-                self.refuse(
-                    format!(
-                        "too few channels about the edge of {} at {edge:.2} eV",
-                        self.input.spectrum.source.name()
-                    ),
-                    "a fit needs eleven channels or more within the window; measure a finer or \
+        EdgeProblem::new(
+            self.levels(),
+            &curve.energies,
+            &curve.values,
+            &curve.noise,
+            options,
+        )
+        .ok_or_else(|| {
+            self.refuse(
+                format!(
+                    "too few channels about the edge of {} at {edge:.2} eV",
+                    self.input.spectrum.source.name()
+                ),
+                "a fit needs eleven channels or more within the window; measure a finer or \
                      longer curve, or set edge_window under [comparison]",
-                )
-            })
+            )
+        })
     }
 
     /// Fits in a window about a guess of the edge, then once more about the edge that was found.
@@ -242,7 +280,14 @@ impl Fitter<'_> {
             bias_uncertainty,
             spread,
             ..
-        } = tangent_bias(problem, fit, self.computed.edge, options, REPLICAS, self.seed())?;
+        } = tangent_bias(
+            problem,
+            fit,
+            self.computed.edge,
+            options,
+            REPLICAS,
+            self.seed(),
+        )?;
         Some(ProtocolEdge {
             onset: Quantity::new(onset, spread),
             bias: Quantity::new(bias, bias_uncertainty),
@@ -301,10 +346,15 @@ impl Fitter<'_> {
             };
             let window = self.window(edge, instrument, (1.0, 1.0));
             let problem = self.problem(edge, window, moved);
-            problem.map_or(fit.shift, |problem| problem.fit_from(fit, self.sampled()).shift)
+            problem.map_or(fit.shift, |problem| {
+                problem.fit_from(fit, self.sampled()).shift
+            })
         };
         let half = 0.5 * (shift(1.0) - shift(-1.0));
-        let basis = format!("refitted with {:.4} eV more and less", uncertainty * FWHM_PER_SIGMA);
+        let basis = format!(
+            "refitted with {:.4} eV more and less",
+            uncertainty * FWHM_PER_SIGMA
+        );
         self.cause("resolution", Some(half.abs()), basis)
     }
 

@@ -24,7 +24,10 @@ rule! {
 }
 
 fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
-    let Some(list) = subject.spectrum().and_then(|s| s.standard_uncertainty.as_ref()) else {
+    let Some(list) = subject
+        .spectrum()
+        .and_then(|s| s.standard_uncertainty.as_ref())
+    else {
         return Vec::new();
     };
     let rows = list.iter().enumerate().filter(|(_, u)| **u <= 0.0);

@@ -166,27 +166,26 @@ impl Study {
     pub fn read(path: &Path, shown: &str) -> Result<Self, Vec<Problem>> {
         let source = Source::read(path, shown).map_err(|problem| vec![problem])?;
         let folder = path.parent().unwrap_or(Path::new("")).to_owned();
-        Self::from_source(source, &folder)
+        Self::from_source(&source, &folder)
     }
 
     /// Reads a study from text; the paths in it are relative to `folder`.
     ///
     /// # Errors
     /// As [`Study::read`].
-    pub fn from_source(source: Source, folder: &Path) -> Result<Self, Vec<Problem>> {
-        let text = source.text().to_owned();
-        let (table, errors) = toml::de::DeTable::parse_recoverable(&text);
+    pub fn from_source(source: &Source, folder: &Path) -> Result<Self, Vec<Problem>> {
+        let text = source.text();
+        let (table, errors) = toml::de::DeTable::parse_recoverable(text);
         if !errors.is_empty() {
             return Err(errors
                 .iter()
                 .map(|error| {
                     let span = error.span().unwrap_or(0..0);
-                    Problem::new(format!("not TOML: {}", error.message()))
-                        .at(source.place(span))
+                    Problem::new(format!("not TOML: {}", error.message())).at(source.place(span))
                 })
                 .collect());
         }
-        let mut reader = Reader::new(&source, folder);
+        let mut reader = Reader::new(source, folder);
         let study = sections::study(&mut reader, table.get_ref());
         let problems = reader.into_problems();
         match study {

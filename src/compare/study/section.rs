@@ -77,11 +77,21 @@ impl<'a> Reader<'a> {
         self.source.place(span)
     }
 
-    fn wrong(&mut self, section: &Section<'_>, key: &str, value: &Spanned<DeValue<'_>>, want: &str) {
+    fn wrong(
+        &mut self,
+        section: &Section<'_>,
+        key: &str,
+        value: &Spanned<DeValue<'_>>,
+        want: &str,
+    ) {
         let found = value.get_ref().type_str();
         let place = self.place(value.span());
         self.problem(
-            Problem::new(format!("{} must be {want}, found {found}", section.path(key))).at(place),
+            Problem::new(format!(
+                "{} must be {want}, found {found}",
+                section.path(key)
+            ))
+            .at(place),
         );
     }
 
@@ -95,7 +105,11 @@ impl<'a> Reader<'a> {
     }
 
     /// A table within a section; empty where it is not there.
-    pub(super) fn section<'t>(&mut self, parent: &mut Section<'t>, key: &'static str) -> Section<'t> {
+    pub(super) fn section<'t>(
+        &mut self,
+        parent: &mut Section<'t>,
+        key: &'static str,
+    ) -> Section<'t> {
         let name = parent.path(key);
         let table = parent.value(key).and_then(|value| {
             let table = value.get_ref().as_table();
@@ -111,14 +125,17 @@ impl<'a> Reader<'a> {
         }
     }
 
-    pub(super) fn text(&mut self, section: &mut Section<'_>, key: &'static str) -> Option<(String, Place)> {
+    pub(super) fn text(
+        &mut self,
+        section: &mut Section<'_>,
+        key: &'static str,
+    ) -> Option<(String, Place)> {
         let value = section.value(key)?;
-        match value.get_ref().as_str() {
-            Some(text) => Some((text.to_owned(), self.place(value.span()))),
-            None => {
-                self.wrong(section, key, value, "a string");
-                None
-            }
+        if let Some(text) = value.get_ref().as_str() {
+            Some((text.to_owned(), self.place(value.span())))
+        } else {
+            self.wrong(section, key, value, "a string");
+            None
         }
     }
 
@@ -238,18 +255,24 @@ impl<'a> Reader<'a> {
             && *number < 0.0
         {
             self.problem(
-                Problem::new(format!("{} is negative", inner.path("standard_uncertainty")))
-                    .at(at.clone()),
+                Problem::new(format!(
+                    "{} is negative",
+                    inner.path("standard_uncertainty")
+                ))
+                .at(at.clone()),
             );
         }
-        if inner.table.is_some_and(|table| table.get("value").is_none()) {
+        if inner
+            .table
+            .is_some_and(|table| table.get("value").is_none())
+        {
             self.problem(
                 Problem::new(format!("{} has no value", inner.name))
                     .at(place.clone())
                     .with_help(format!("add value = {}", dimension.example())),
             );
         }
-        self.finish(inner);
+        self.finish(&inner);
         Some(Stated {
             value: value?.0,
             standard_uncertainty: uncertainty.map(|(number, _)| number),
@@ -257,7 +280,13 @@ impl<'a> Reader<'a> {
         })
     }
 
-    fn number(&mut self, name: &str, text: &str, dimension: Dimension, place: &Place) -> Option<f64> {
+    fn number(
+        &mut self,
+        name: &str,
+        text: &str,
+        dimension: Dimension,
+        place: &Place,
+    ) -> Option<f64> {
         match dimension.read(text) {
             Ok(number) if number.is_finite() => Some(number),
             Ok(_) => {
@@ -276,17 +305,24 @@ impl<'a> Reader<'a> {
     }
 
     /// A file that must be there.
-    pub(super) fn file(&mut self, section: &mut Section<'_>, key: &'static str) -> Option<NamedFile> {
+    pub(super) fn file(
+        &mut self,
+        section: &mut Section<'_>,
+        key: &'static str,
+    ) -> Option<NamedFile> {
         let (shown, place) = self.text(section, key)?;
         let path = self.folder.join(&shown);
         if !path.is_file() {
             self.problem(
-                Problem::new(format!("{} names a file that is not there: {shown}", section.path(key)))
-                    .at(place)
-                    .with_help(format!(
-                        "paths are relative to the study file; looked for {}",
-                        path.display()
-                    )),
+                Problem::new(format!(
+                    "{} names a file that is not there: {shown}",
+                    section.path(key)
+                ))
+                .at(place)
+                .with_help(format!(
+                    "paths are relative to the study file; looked for {}",
+                    path.display()
+                )),
             );
             return None;
         }
@@ -320,7 +356,12 @@ impl<'a> Reader<'a> {
                 (Some(header), _) => ColumnChoice::Header(header.to_owned()),
                 (None, Some(number)) => ColumnChoice::Number(number),
                 (None, None) => {
-                    self.wrong(section, "column", value, "made of headers or numbers from 1");
+                    self.wrong(
+                        section,
+                        "column",
+                        value,
+                        "made of headers or numbers from 1",
+                    );
                     continue;
                 }
             };
@@ -343,21 +384,20 @@ impl<'a> Reader<'a> {
         };
         let mut list = Vec::new();
         for (name, value) in table {
-            match Role::from_name(name.get_ref()) {
-                Some(role) => list.push((role, value)),
-                None => {
-                    let roles: Vec<(&str, ())> =
-                        Role::ALL.iter().map(|role| (role.name(), ())).collect();
-                    let place = self.place(name.span());
-                    self.problem(unknown_word(&section.path(key), name.get_ref(), &roles).at(place));
-                }
+            if let Some(role) = Role::from_name(name.get_ref()) {
+                list.push((role, value));
+            } else {
+                let roles: Vec<(&str, ())> =
+                    Role::ALL.iter().map(|role| (role.name(), ())).collect();
+                let place = self.place(name.span());
+                self.problem(unknown_word(&section.path(key), name.get_ref(), &roles).at(place));
             }
         }
         list
     }
 
     /// Reports the keys that nobody asked for.
-    pub(super) fn finish(&mut self, section: Section<'_>) {
+    pub(super) fn finish(&mut self, section: &Section<'_>) {
         for (key, _) in section.table.into_iter().flatten() {
             let name: &str = key.get_ref();
             if section.asked.contains(&name) {
@@ -412,7 +452,10 @@ impl<'a> Section<'a> {
 fn unknown_word<T>(name: &str, text: &str, words: &[(&str, T)]) -> Problem {
     let problem = Problem::new(format!("{name} knows no \"{text}\""));
     match nearest(text, words) {
-        Some(near) => problem.with_help(format!("did you mean \"{near}\"? It knows {}", listed(words))),
+        Some(near) => problem.with_help(format!(
+            "did you mean \"{near}\"? It knows {}",
+            listed(words)
+        )),
         None => problem.with_help(format!("it knows {}", listed(words))),
     }
 }

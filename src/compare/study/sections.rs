@@ -4,8 +4,8 @@ use toml::de::DeTable;
 
 use super::section::{Dimension, Reader, Section};
 use super::{
-    ComparisonSection, ComputedEnergies, ComputedSection, Correction, Protocol, SideSection, Stated,
-    Study,
+    ComparisonSection, ComputedEnergies, ComputedSection, Correction, Protocol, SideSection,
+    Stated, Study,
 };
 use crate::parse::{Hints, Problem};
 use crate::quantity::{AxisKind, Reference};
@@ -45,7 +45,7 @@ pub(super) fn study(reader: &mut Reader<'_>, table: &DeTable<'_>) -> Option<Stud
     let comparison = comparison(reader, section);
     let section = reader.section(&mut root, "corrections");
     let corrections = corrections(reader, section);
-    reader.finish(root);
+    reader.finish(&root);
     if photoemission.is_none()
         && inverse_photoemission.is_none()
         && !table.contains_key("photoemission")
@@ -55,7 +55,9 @@ pub(super) fn study(reader: &mut Reader<'_>, table: &DeTable<'_>) -> Option<Stud
         reader.problem(
             Problem::new("the study names no measurement")
                 .at(place)
-                .with_help("add [photoemission] or [inverse_photoemission] with spectrum = \"FILE\""),
+                .with_help(
+                    "add [photoemission] or [inverse_photoemission] with spectrum = \"FILE\"",
+                ),
         );
     }
     Some(Study {
@@ -82,13 +84,22 @@ const AXES: [(&str, AxisKind); 3] = [
     ("final-state", AxisKind::FinalState),
 ];
 
-fn needed<T>(reader: &mut Reader<'_>, section: &Section<'_>, key: &str, value: Option<T>, had: bool) -> Option<T> {
+fn needed<T>(
+    reader: &mut Reader<'_>,
+    section: &Section<'_>,
+    key: &str,
+    value: Option<T>,
+    had: bool,
+) -> Option<T> {
     if value.is_none() && !had {
         let place = reader.place(0..0);
         reader.problem(
             Problem::new(format!("the study has no {}", section.path(key)))
                 .at(place)
-                .with_help(format!("add {key} = \"FILE\" under [{}]", section.path("").trim_end_matches('.'))),
+                .with_help(format!(
+                    "add {key} = \"FILE\" under [{}]",
+                    section.path("").trim_end_matches('.')
+                )),
         );
     }
     value
@@ -122,8 +133,8 @@ fn computed(reader: &mut Reader<'_>, mut section: Section<'_>) -> Option<Compute
             uncertainty.push((key.to_owned(), stated));
         }
     }
-    reader.finish(inner);
-    reader.finish(section);
+    reader.finish(&inner);
+    reader.finish(&section);
     Some(ComputedSection {
         levels: levels?,
         reference: reference.as_ref().map(|(reference, _)| *reference),
@@ -136,7 +147,11 @@ fn computed(reader: &mut Reader<'_>, mut section: Section<'_>) -> Option<Compute
 }
 
 /// Reads one measured side. Keys of the other technique are unknown here.
-fn side(reader: &mut Reader<'_>, mut section: Section<'_>, photoemission: bool) -> Option<SideSection> {
+fn side(
+    reader: &mut Reader<'_>,
+    mut section: Section<'_>,
+    photoemission: bool,
+) -> Option<SideSection> {
     if !section.is_there() {
         return None;
     }
@@ -149,7 +164,11 @@ fn side(reader: &mut Reader<'_>, mut section: Section<'_>, photoemission: bool) 
         units: reader.units(s),
         axis: reader.word(s, "axis", &AXES).map(|(axis, _)| axis),
         reference: reader.word(s, "reference", &REFERENCES).map(|(r, _)| r),
-        settle: format!("under [{}] in {}", s.path("").trim_end_matches('.'), reader.source.name()),
+        settle: format!(
+            "under [{}] in {}",
+            s.path("").trim_end_matches('.'),
+            reader.source.name()
+        ),
     };
     let photon_energy = positive(reader, s, "photon_energy", Dimension::Energy);
     let (analyser_work_function, sample_work_function, sample_bias) = if photoemission {
@@ -175,7 +194,7 @@ fn side(reader: &mut Reader<'_>, mut section: Section<'_>, photoemission: bool) 
     let temperature = not_negative(reader, s, "temperature", Dimension::Temperature);
     let dwell = positive(reader, s, "dwell", Dimension::Time);
     let sweeps = reader.whole(s, "sweeps");
-    reader.finish(section);
+    reader.finish(&section);
     Some(SideSection {
         spectrum: spectrum?,
         hints,
@@ -194,12 +213,26 @@ fn side(reader: &mut Reader<'_>, mut section: Section<'_>, photoemission: bool) 
     })
 }
 
-fn positive(reader: &mut Reader<'_>, section: &mut Section<'_>, key: &'static str, dimension: Dimension) -> Option<Stated> {
-    bounded(reader, section, key, dimension, "positive", |value| value > 0.0)
+fn positive(
+    reader: &mut Reader<'_>,
+    section: &mut Section<'_>,
+    key: &'static str,
+    dimension: Dimension,
+) -> Option<Stated> {
+    bounded(reader, section, key, dimension, "positive", |value| {
+        value > 0.0
+    })
 }
 
-fn not_negative(reader: &mut Reader<'_>, section: &mut Section<'_>, key: &'static str, dimension: Dimension) -> Option<Stated> {
-    bounded(reader, section, key, dimension, "zero or more", |value| value >= 0.0)
+fn not_negative(
+    reader: &mut Reader<'_>,
+    section: &mut Section<'_>,
+    key: &'static str,
+    dimension: Dimension,
+) -> Option<Stated> {
+    bounded(reader, section, key, dimension, "zero or more", |value| {
+        value >= 0.0
+    })
 }
 
 fn bounded(
@@ -214,9 +247,7 @@ fn bounded(
     if holds(stated.value) {
         return Some(stated);
     }
-    reader.problem(
-        Problem::new(format!("{} must be {want}", section.path(key))).at(stated.place),
-    );
+    reader.problem(Problem::new(format!("{} must be {want}", section.path(key))).at(stated.place));
     None
 }
 
@@ -225,7 +256,7 @@ fn comparison(reader: &mut Reader<'_>, mut section: Section<'_>) -> ComparisonSe
     let protocols = reader.words(&mut section, "protocols", &words);
     let tolerance = positive(reader, &mut section, "tolerance", Dimension::Energy);
     let window = positive(reader, &mut section, "edge_window", Dimension::Energy);
-    reader.finish(section);
+    reader.finish(&section);
     let named: Vec<Protocol> = protocols
         .into_iter()
         .flatten()
@@ -244,7 +275,9 @@ fn comparison(reader: &mut Reader<'_>, mut section: Section<'_>) -> ComparisonSe
 
 fn corrections(reader: &mut Reader<'_>, mut section: Section<'_>) -> Vec<Correction> {
     let names = CORRECTIONS.map(|(name, _)| (name, name));
-    let included = reader.words(&mut section, "already_included", &names).unwrap_or_default();
+    let included = reader
+        .words(&mut section, "already_included", &names)
+        .unwrap_or_default();
     let mut list = Vec::new();
     for (name, sign) in CORRECTIONS {
         let Some(stated) = reader.quantity(&mut section, name, Dimension::Energy) else {
@@ -262,6 +295,6 @@ fn corrections(reader: &mut Reader<'_>, mut section: Section<'_>) -> Vec<Correct
         }
         list.push(Correction { name, stated, sign });
     }
-    reader.finish(section);
+    reader.finish(&section);
     list
 }
