@@ -299,3 +299,69 @@ fn contradicting_zeros_are_refused() {
         "{message}"
     );
 }
+
+#[test]
+fn a_table_without_k_points_is_compared_without_their_sampling() {
+    let mut levels = "# Invented.\nband,E_QP (eV),occupation\n".to_owned();
+    for k in 0..200 {
+        let (v, c) = band(k);
+        let _ = writeln!(levels, "1,{v:.12},2\n2,{:.12},0", c + 2.8);
+    }
+    let variant = Variant {
+        levels,
+        ..Variant::plain()
+    };
+    let result = variant.result();
+    let (valence, conduction) = edges(&result);
+    assert!((valence - VALENCE).abs() < 0.005, "{valence}");
+    assert!((conduction - CONDUCTION).abs() < 0.01, "{conduction}");
+    assert!(result.computed.direct_gap.is_none());
+    let row = result
+        .budget
+        .iter()
+        .find(|row| row.name.starts_with("sampling"));
+    assert!(!row.unwrap().stated);
+}
+
+/// Two equal bands in the curve and one in the table: it may be either.
+#[test]
+fn competing_alignments_leave_the_verdict_open() {
+    let (energy, counts) = curve(true);
+    let spacing = 6.0;
+    let low = energy.iter().map(|e| e - spacing).zip(&counts);
+    let high = energy.iter().copied().zip(&counts);
+    let gap_side = *counts.last().unwrap();
+    let between = (1..100).map(|i| energy[219] - spacing + 0.02 * f64::from(i));
+    let between = between.filter(|e| *e < energy[0] - 1e-9);
+    let kinetic = PHOTON - WORK_FUNCTION;
+    let rows: Vec<(f64, f64)> = low
+        .map(|(e, n)| (e, *n))
+        .chain(between.map(|e| (e, gap_side)))
+        .chain(high.map(|(e, n)| (e, *n)))
+        .map(|(e, n)| (e + kinetic, n))
+        .collect();
+    let variant = Variant {
+        pes: table("Kinetic energy / eV,counts", rows.into_iter()),
+        ..Variant::plain()
+    };
+    let result = variant.result();
+    let names: Vec<&str> = result.cautions.iter().map(|c| c.name.as_str()).collect();
+    assert!(names.contains(&"alignment-ambiguous"), "{names:?}");
+    assert_eq!(result.verdict.agrees, None);
+    let other = &result.fits[0].alternatives[0];
+    let apart = (other.shift_ev - result.fits[0].shift.value).abs();
+    assert!((apart - spacing).abs() < 0.1, "{apart}");
+}
+
+#[test]
+fn an_angle_resolved_curve_gets_its_caution() {
+    let plain = Variant::plain();
+    let variant = Variant {
+        pes: plain
+            .pes
+            .replace("# Invented.", "# technique: angle-resolved photoemission"),
+        ..plain
+    };
+    let result = variant.result();
+    assert!(result.cautions.iter().any(|c| c.name == "matrix-elements"));
+}

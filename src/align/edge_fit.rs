@@ -28,7 +28,7 @@ use super::least_squares::{Model, Solution, Weighing, covariance, minimise, whit
 use super::misfit::{Misfit, runs_probability};
 use super::noise::Noise;
 use super::sampling::Sampled;
-use super::spread::Spread;
+use super::spread::{PARAMETERS, Spread};
 use super::window::Window;
 use crate::schema::Side;
 
@@ -40,8 +40,6 @@ const GAMMA_MAX: f64 = 0.5;
 const INADEQUATE: f64 = 1e-3;
 /// Where a bounded parameter starts that was at its bound, as a fraction of its range.
 const BARELY: f64 = 1e-3;
-/// Number of parameters.
-pub(super) const PARAMETERS: usize = 6;
 
 /// What broadens a curve by known instrument.
 #[derive(Debug, Clone, Copy, PartialEq)]

@@ -2,8 +2,10 @@
 
 use nalgebra::{Cholesky, DMatrix, DVector, Dyn};
 
-use super::edge_fit::PARAMETERS;
 use super::sampling::Deviations;
+
+/// Number of parameters of an edge: shift, amplitude, variance, gamma, constant, step.
+pub(super) const PARAMETERS: usize = 6;
 
 /// The covariance of data and model.
 pub(super) struct Spread {

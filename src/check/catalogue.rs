@@ -26,6 +26,7 @@ pub static CATALOGUE: &[&dyn Rule] = &[
     &rules::OccupationFractional,
     &rules::UncertaintyNotPositive,
     &rules::ValueMissing,
+    &rules::WeightMissing,
     &rules::WeightNegative,
 ];
 

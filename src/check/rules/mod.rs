@@ -8,6 +8,7 @@ mod level_repeated;
 mod occupation_fractional;
 mod uncertainty_not_positive;
 mod value_missing;
+mod weight_missing;
 mod weight_negative;
 
 pub use axis_not_monotonic::AxisNotMonotonic;
@@ -18,6 +19,7 @@ pub use level_repeated::LevelRepeated;
 pub use occupation_fractional::OccupationFractional;
 pub use uncertainty_not_positive::UncertaintyNotPositive;
 pub use value_missing::ValueMissing;
+pub use weight_missing::WeightMissing;
 pub use weight_negative::WeightNegative;
 
 /// At most this many findings of one rule in one file name their cells; the last one says how many
