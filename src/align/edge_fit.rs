@@ -13,8 +13,9 @@
 //! a width that wants to be zero gets there in a few steps.
 //!
 //! The levels stand at a finite number of k-points. A Poisson fit comes first; with C the covariance
-//! of the model that follows from their sampling (`sampling.rs`), the fit is then brought to the
-//! solution of J' V^-1 (y - mu) = 0, V = diag(mu) + C, which is the Poisson score where C is zero.
+//! of the model that follows from their sampling (`sampling.rs`) and kappa the share of it that the
+//! misfit shows (`spread.rs`), the fit is then brought to the solution of J' V^-1 (y - mu) = 0,
+//! V = diag(mu) + kappa C, which is the Poisson score where C is zero.
 //!
 //! The Fermi occupation is left out: it matters only where an edge lies within a few kT of the Fermi
 //! level.
@@ -27,7 +28,7 @@ use super::density::{Density, Derivatives, Domain, Plan, Sampler, Values};
 use super::least_squares::{Model, Solution, Weighing, covariance, minimise, whiten};
 use super::misfit::{Misfit, runs_probability};
 use super::noise::Noise;
-use super::sampling::Sampled;
+use super::sampling::{Deviations, Sampled};
 use super::spread::{PARAMETERS, Spread};
 use super::window::Window;
 use crate::schema::Side;
@@ -98,6 +99,8 @@ pub struct EdgeFit {
     pub noise_variance: f64,
     /// Influence of each group of k-points on the shift, eV; the squares add to its sampling variance.
     pub influence: Vec<f64>,
+    /// Share of the covariance of randomly drawn k-points that the misfit shows.
+    pub sampling_share: f64,
     /// Chi-square over the degrees of freedom, by the covariance of data and model.
     pub reduced_chi_square: f64,
     /// Probability of as large a chi-square in a right model.
@@ -280,10 +283,17 @@ impl EdgeProblem {
     /// Brings a Poisson fit to the one that knows of the sampling, the covariance taken twice.
     fn finish(&self, mut solution: Solution, levels: Sampled<'_>) -> EdgeFit {
         let mut evaluations = solution.evaluations;
-        let mut spread = self.spread(&self.natural(&solution.parameters), levels);
+        let p = self.natural(&solution.parameters);
+        let (model, jacobian) = self.model_and_derivatives(&p);
+        let misfit: Vec<f64> = model.iter().zip(&self.values).map(|(m, y)| y - m).collect();
+        let deviations = self.deviations(&p, levels);
+        let share = Spread::share(&misfit, &jacobian, &self.variances(&model), &deviations);
+        let mut spread = Spread::new(self.variances(&model), deviations.with_share(share));
         for pass in 0..2 {
             if pass > 0 {
-                spread = self.spread(&self.natural(&solution.parameters), levels);
+                let p = self.natural(&solution.parameters);
+                let deviations = self.deviations(&p, levels).with_share(share);
+                spread = Spread::new(self.variances(&self.model(&p)), deviations);
             }
             let weighing = Weighing::Correlated {
                 values: &self.values,
@@ -294,25 +304,20 @@ impl EdgeProblem {
         }
         EdgeFit {
             evaluations,
+            sampling_share: share,
             ..self.report(&solution, &spread)
         }
     }
 
-    /// What data and model may be off by, at six parameters.
-    fn spread(&self, p: &[f64; PARAMETERS], levels: Sampled<'_>) -> Spread {
+    fn variances(&self, model: &[f64]) -> Vec<f64> {
         let misfit = self.misfit();
-        let model = self.model(p);
-        let variances: Vec<f64> = (0..model.len())
-            .map(|i| misfit.variance(i, model[i]))
-            .collect();
-        let deviations = levels.deviations(
-            &self.energies,
-            self.options.side,
-            self.density(p),
-            p[1],
-            p[5],
-        );
-        Spread::new(variances, deviations)
+        let channels = model.iter().enumerate();
+        channels.map(|(i, &mu)| misfit.variance(i, mu)).collect()
+    }
+
+    fn deviations(&self, p: &[f64; PARAMETERS], levels: Sampled<'_>) -> Deviations {
+        let (channels, side) = (&self.energies, self.options.side);
+        levels.deviations(channels, side, self.density(p), p[1], p[5])
     }
 
     fn start(&self, shift: f64, sigma: f64, gamma: f64) -> Vec<f64> {
@@ -474,6 +479,7 @@ impl EdgeProblem {
             influence: (spread.deviations.model.tr_mul(&gains) * inflation.sqrt())
                 .as_slice()
                 .to_vec(),
+            sampling_share: 0.0,
             reduced_chi_square,
             fit_probability,
             runs_probability,

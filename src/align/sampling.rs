@@ -93,6 +93,19 @@ pub struct Deviations {
     pub derivatives: [DMatrix<f64>; 4],
 }
 
+impl Deviations {
+    /// The same deviations where only a share of their covariance is there.
+    #[must_use]
+    pub fn with_share(mut self, share: f64) -> Self {
+        let scale = share.sqrt();
+        self.model *= scale;
+        for derivative in &mut self.derivatives {
+            *derivative *= scale;
+        }
+        self
+    }
+}
+
 impl Sampled<'_> {
     /// The deviations `d_k` of the broadened density plus `step` times its integral from the gap end,
     /// times `amplitude`, at ascending `channels`. Cost: four interpolations a level near the window

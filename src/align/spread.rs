@@ -1,7 +1,17 @@
-//! What data and model may be off by together, V = diag(mu) + C, and what follows for a fit.
+//! What data and model may be off by together, V = diag(mu) + kappa C, and what follows for a fit.
+//!
+//! C is the covariance of a model whose k-points were drawn at random. The points of a regular grid are
+//! not, and its density may be far closer to the true one; how much of C there is, kappa, is seen in
+//! the misfit r of the plain fit. Its restricted likelihood, with the parameters' directions J taken
+//! out (Patterson and Thompson, Biometrika 58, 545 (1971)),
+//!
+//!   -2 ln L = ln det V + ln det(J'V^-1 J) + r'P r,   P = V^-1 - V^-1 J (J'V^-1 J)^-1 J'V^-1,
+//!
+//! weighs values from none to twice that of random points, all as probable beforehand; the mean is used.
 
 use nalgebra::{Cholesky, DMatrix, DVector, Dyn};
 
+use super::least_squares::whiten;
 use super::sampling::Deviations;
 
 /// Number of parameters of an edge: shift, amplitude, variance, gamma, constant, step.
@@ -18,6 +28,32 @@ pub(super) struct Spread {
 }
 
 impl Spread {
+    /// How much of the deviations of random k-points the misfit shows: the mean of kappa.
+    pub(super) fn share(
+        misfit: &[f64],
+        jacobian: &DMatrix<f64>,
+        variances: &[f64],
+        deviations: &Deviations,
+    ) -> f64 {
+        if deviations.model.ncols() == 0 {
+            return 0.0;
+        }
+        let covariance = &deviations.model * deviations.model.transpose();
+        let misfit = DMatrix::from_column_slice(misfit.len(), 1, misfit);
+        let steps: Vec<(f64, f64)> = (0..=SHARES)
+            .filter_map(|step| {
+                // Closer together near none, where regular grids are.
+                let kappa = 2.0 * (f64::from(step) / f64::from(SHARES)).powi(4);
+                let mut total = &covariance * kappa;
+                for (index, variance) in variances.iter().enumerate() {
+                    total[(index, index)] += variance;
+                }
+                Some((kappa, restricted(Cholesky::new(total)?, &misfit, jacobian)?))
+            })
+            .collect();
+        mean_over(&steps)
+    }
+
     /// Adds the variances of the data, which are positive, to the covariance of the model.
     pub(super) fn new(variances: Vec<f64>, deviations: Deviations) -> Self {
         let mut covariance = &deviations.model * deviations.model.transpose();
@@ -65,4 +101,50 @@ impl Spread {
             .tr_solve_lower_triangular_mut(&mut gains);
         gains
     }
+}
+
+/// Number of intervals between the values of kappa.
+const SHARES: u16 = 40;
+
+/// Minus twice the logarithm of the restricted likelihood.
+fn restricted(
+    root: Cholesky<f64, Dyn>,
+    misfit: &DMatrix<f64>,
+    jacobian: &DMatrix<f64>,
+) -> Option<f64> {
+    let log_determinant = |root: &Cholesky<f64, Dyn>| -> f64 {
+        2.0 * root
+            .l_dirty()
+            .diagonal()
+            .iter()
+            .map(|x| x.ln())
+            .sum::<f64>()
+    };
+    let (r, j) = (
+        whiten(&root, misfit.clone()),
+        whiten(&root, jacobian.clone()),
+    );
+    let information = Cholesky::new(j.tr_mul(&j))?;
+    let shared = whiten(&information, j.tr_mul(&r));
+    Some(
+        log_determinant(&root) + log_determinant(&information) + r.norm_squared()
+            - shared.norm_squared(),
+    )
+}
+
+/// Mean of kappa over minus twice a log-likelihood at ascending values, by trapezoids.
+fn mean_over(steps: &[(f64, f64)]) -> f64 {
+    let least = steps
+        .iter()
+        .map(|step| step.1)
+        .fold(f64::INFINITY, f64::min);
+    let likelihood = |step: &(f64, f64)| (-0.5 * (step.1 - least)).exp();
+    let (mut sum, mut moment) = (0.0, 0.0);
+    for pair in steps.windows(2) {
+        let width = 0.5 * (pair[1].0 - pair[0].0);
+        let (left, right) = (likelihood(&pair[0]), likelihood(&pair[1]));
+        sum += width * (left + right);
+        moment += width * (left * pair[0].0 + right * pair[1].0);
+    }
+    if sum > 0.0 { moment / sum } else { 1.0 }
 }

@@ -264,7 +264,16 @@ impl Comparison<'_> {
         let norm = |part: &dyn Fn(usize) -> f64| -> f64 {
             (0..groups).map(|g| part(g).powi(2)).sum::<f64>().sqrt()
         };
-        let basis = format!("influence of {groups} k-points or groups of them, as drawn at random");
+        let shares: Vec<String> = self
+            .sides
+            .iter()
+            .map(|side| format!("{} {:.2}", side.side.name(), side.fit.sampling_share))
+            .collect();
+        let basis = format!(
+            "influence of {groups} k-points or groups of them; misfit shows this share of random \
+             sampling: {}",
+            shares.join(", ")
+        );
         let degrees = f64::from(u32::try_from(groups - 1).unwrap_or(u32::MAX));
         Cause::of_both_edges(
             name,
