@@ -81,7 +81,7 @@ fn measured(curve: &SideCurve, energy: &str) -> Table {
         about: format!("{}, measured and fitted", curve.side.technique()),
         columns: vec![
             column(energy.to_owned(), &curve.energy_ev),
-            column(format!("measured ({unit})"), &curve.measured),
+            column(format!("intensity ({unit})"), &curve.measured),
             column(
                 format!("standard uncertainty ({unit})"),
                 &curve.standard_uncertainty,
@@ -199,7 +199,7 @@ mod tests {
         );
         assert_eq!(
             lines[4],
-            "E - E_F (eV),measured (counts),standard uncertainty (counts),model (counts),\
+            "E - E_F (eV),intensity (counts),standard uncertainty (counts),model (counts),\
              background (counts),residual (sigma),in fitted window"
         );
     }

@@ -5,6 +5,7 @@ use std::path::Path;
 
 use super::Error;
 use super::csv_curves::Table;
+use crate::parse::{Source, read_columns};
 use crate::schema::ResultDocument;
 
 /// What the bytes of a file stand for.
@@ -26,7 +27,7 @@ pub(super) fn verify(path: &Path, file: &str, bytes: &[u8], meant: &Meant) -> Re
         return Err(differs(file, "its bytes changed on the way".to_owned()));
     }
     match meant {
-        Meant::Table(table) => same_columns(file, &table.columns, &read_columns(path, file)?),
+        Meant::Table(table) => same_columns(file, &table.columns, &columns(path, file)?),
         Meant::Result(result) => same_result(file, result, &found),
         Meant::Svg => well_formed(file, &found),
         Meant::Page => Ok(()),
@@ -65,24 +66,13 @@ fn well_formed(file: &str, bytes: &[u8]) -> Result<(), Error> {
 
 type Columns = Vec<(String, Vec<f64>)>;
 
-/// The columns of a comma-separated file with `#` comments.
-fn read_columns(path: &Path, file: &str) -> Result<Columns, Error> {
-    let lost = |problem: csv::Error| differs(file, problem.to_string());
-    let mut reader = csv::ReaderBuilder::new()
-        .comment(Some(b'#'))
-        .from_path(path)
-        .map_err(lost)?;
-    let headers = reader.headers().map_err(lost)?;
-    let mut columns: Columns = headers
-        .iter()
-        .map(|header| (header.to_owned(), Vec::new()))
-        .collect();
-    for record in reader.deserialize::<Vec<f64>>() {
-        for ((_, values), value) in columns.iter_mut().zip(record.map_err(lost)?) {
-            values.push(value);
-        }
-    }
-    Ok(columns)
+/// The columns of a table, by the reader that any user's table goes through.
+fn columns(path: &Path, file: &str) -> Result<Columns, Error> {
+    let source = Source::read(path, file).map_err(|problem| differs(file, problem.to_string()))?;
+    read_columns(&source).map_err(|problems| {
+        let first = problems.first().map(ToString::to_string);
+        differs(file, first.unwrap_or_default())
+    })
 }
 
 fn same_columns(file: &str, meant: &Columns, found: &Columns) -> Result<(), Error> {
@@ -122,6 +112,8 @@ mod tests {
     use super::*;
     use crate::export::csv_curves::{render, tables};
     use crate::export::sample;
+    use crate::parse::{Hints, read_spectrum};
+    use crate::quantity::AxisKind;
 
     fn on_disk(text: &str, meant: &Meant) -> Result<(), Error> {
         let dir = tempfile::tempdir().unwrap();
@@ -143,6 +135,60 @@ mod tests {
             .unwrap_err()
             .to_string();
         assert!(told.contains("`in fitted window`"), "{told}");
+    }
+
+    #[test]
+    fn any_title_and_any_number_survive_the_reader() {
+        let (mut result, mut curves) = sample::two_sides();
+        let odd = [f64::NAN, f64::INFINITY, -0.0, 5e-324, f64::MAX, 0.1 + 0.2];
+        curves.sides[0].residual[..6].copy_from_slice(&odd);
+        for title in [
+            "unit: Ry",
+            "axis: kinetic",
+            "energy (Ha), intensity (counts)",
+            "1.0,2.0,3.0",
+            "photon energy: 21.2 furlongs",
+            "delimiter: ;",
+            "\"",
+            "",
+        ] {
+            result.title = title.to_owned();
+            for table in tables(&result, &curves).unwrap() {
+                let told = on_disk(&render(&table, &result), &Meant::Table(&table));
+                assert!(told.is_ok(), "{title:?}: {told:?}");
+            }
+        }
+    }
+
+    #[test]
+    fn an_exported_curve_reads_as_the_spectrum_that_it_was() {
+        let (result, curves) = sample::two_sides();
+        let tables = tables(&result, &curves).unwrap();
+        for (table, curve) in tables.iter().zip(&curves.sides) {
+            let source = Source::from_text(table.file, &render(table, &result));
+            let read = read_spectrum(source, &Hints::default()).unwrap().document;
+            assert_eq!(read.reference, result.measured.reference);
+            assert_eq!(read.axis, AxisKind::FinalState);
+            assert_eq!(read.energy_ev, curve.energy_ev);
+            assert_eq!(read.intensity, curve.measured);
+            assert_eq!(
+                read.standard_uncertainty.as_ref(),
+                Some(&curve.standard_uncertainty)
+            );
+        }
+    }
+
+    #[test]
+    fn a_computed_curve_is_no_spectrum() {
+        let (result, curves) = sample::two_sides();
+        let table = tables(&result, &curves).unwrap().remove(2);
+        let source = Source::from_text(table.file, &render(&table, &result));
+        let problems = read_spectrum(source, &Hints::default()).unwrap_err();
+        let told = problems[0].to_string();
+        assert!(
+            told.contains("no column is known to hold intensities"),
+            "{told}"
+        );
     }
 
     #[test]

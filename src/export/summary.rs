@@ -13,8 +13,8 @@ const WHOLE: usize = 6;
 
 /// The result as text for a terminal.
 ///
-/// Numbers are rounded by their uncertainty; `±` introduces a standard uncertainty, and intervals
-/// say that they are of 95 %.
+/// Numbers are rounded by their uncertainty; in the table `±` introduces a standard uncertainty, as
+/// its head says, and intervals say that they are of 95 %.
 #[must_use]
 pub fn summary(result: &ResultDocument) -> String {
     let mut lines = vec![cut(&plain(&result.title), WIDTH), String::new()];
@@ -32,6 +32,7 @@ pub fn summary(result: &ResultDocument) -> String {
 fn numbers(result: &ResultDocument) -> Vec<String> {
     let line = |name: &str, quantity: &Option<Quantity>| row(name, &stated(quantity.as_ref()));
     let mut lines = vec![
+        format!("{:1$}value ± standard uncertainty", "", NAMES + WHOLE),
         line("measured valence edge", &result.measured.valence_edge),
         line("measured conduction edge", &result.measured.conduction_edge),
         line("measured gap", &result.measured.gap),
@@ -42,10 +43,16 @@ fn numbers(result: &ResultDocument) -> Vec<String> {
         line("difference, computed - measured", &result.difference),
     ];
     if let Some(interval) = difference_interval(result) {
-        lines.push(row("  its 95 % interval, eV", &interval_text(interval)));
+        lines.push(row(
+            "95 % interval of the difference",
+            &format!("{} eV", interval_text(interval)),
+        ));
     }
     if let Some(score) = result.en_score {
-        lines.push(row("E_n", &rounded(score, 0.1)));
+        lines.push(row(
+            "E_n, difference / 95 % half width",
+            &rounded(score, 0.1),
+        ));
     }
     lines
 }
@@ -81,7 +88,7 @@ fn contributions(result: &ResultDocument) -> Vec<String> {
     }
     let mut lines = vec![
         String::new(),
-        "Largest contributions to the variance of the difference".to_owned(),
+        "Largest contributions to the uncertainty of the difference, share of variance".to_owned(),
     ];
     for (contribution, share) in rows.into_iter().take(3) {
         let u = contribution.difference_ev;
@@ -155,15 +162,16 @@ mod tests {
         The computed gap of 3.588 eV agrees with the measured gap of 3.684 eV: they
         differ by -0.10 eV, within the expanded uncertainty of 0.24 eV.
 
+                                                  value ± standard uncertainty
           measured valence edge                   -1.953 ± 0.031 eV
           measured conduction edge                 1.731 ± 0.068 eV
           measured gap                             3.684 ± 0.074 eV
           computed gap, with corrections           3.588 ± 0.094 eV
           difference, computed - measured         -0.10 ± 0.12 eV
-            its 95 % interval, eV                 -0.34 to 0.14
-          E_n                                     -0.40
+          95 % interval of the difference         -0.34 to 0.14 eV
+          E_n, difference / 95 % half width       -0.40
 
-        Largest contributions to the variance of the difference
+        Largest contributions to the uncertainty of the difference, share of variance
           computation: starting point              0.080 eV, 43 %
           calibration                              0.054 eV, 20 %
           sampling of the Brillouin zone           0.045 eV, 14 %
@@ -180,13 +188,14 @@ mod tests {
 
         There is no measured gap: the study has no inverse photoemission.
 
+                                                  value ± standard uncertainty
           measured valence edge                   -1.953 ± 0.031 eV
           measured conduction edge                not determined
           measured gap                            not determined
           computed gap, with corrections           3.588 ± 0.094 eV
           difference, computed - measured         not determined
 
-        Largest contributions to the variance of the difference
+        Largest contributions to the uncertainty of the difference, share of variance
           computation: starting point              0.080 eV, 43 %
           calibration                              0.054 eV, 20 %
           sampling of the Brillouin zone           0.045 eV, 14 %

@@ -19,6 +19,13 @@ pub(super) fn typeset(number: &str) -> String {
     number.replace('-', "\u{2212}")
 }
 
+/// The text with its units kept on the line of their numbers.
+pub(super) fn unbroken(text: &str) -> String {
+    ["%", "eV", "±"].iter().fold(plain(text), |text, unit| {
+        text.replace(&format!(" {unit}"), &format!("\u{a0}{unit}"))
+    })
+}
+
 /// The 95 % interval: as stated, else two standard uncertainties to each side.
 pub(super) fn interval(quantity: &Quantity) -> Option<(f64, f64)> {
     match (quantity.lower, quantity.upper) {

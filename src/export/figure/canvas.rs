@@ -12,7 +12,7 @@ use crate::export::words::plain;
 
 /// The figure's size in its own units.
 pub(super) const WIDTH: f64 = 1040.0;
-pub(super) const HEIGHT: f64 = 722.0;
+pub(super) const HEIGHT: f64 = 726.0;
 /// Pixels of the backend to a unit.
 pub(super) const SCALE: f64 = 10.0;
 

@@ -19,15 +19,15 @@ pub(super) struct Panel {
 
 pub(super) const SPECTRA: Panel = Panel {
     top: 34.0,
-    bottom: 424.0,
+    bottom: 416.0,
 };
 pub(super) const RESIDUALS: Panel = Panel {
-    top: 438.0,
-    bottom: 538.0,
+    top: 430.0,
+    bottom: 546.0,
 };
 pub(super) const RULER: Panel = Panel {
-    top: 592.0,
-    bottom: 640.0,
+    top: 596.0,
+    bottom: 644.0,
 };
 
 impl Panel {

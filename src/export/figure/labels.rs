@@ -57,6 +57,9 @@ const LINE: f64 = LABEL * 1.2;
 /// Room around the words.
 const PAD: Point = (5.0, 2.0);
 
+/// How close to a target its own curve may lie in the way.
+const NEAR: f64 = 8.0;
+
 /// What lies in a cell.
 #[derive(Clone, Copy, PartialEq, PartialOrd)]
 enum Ground {
@@ -139,16 +142,18 @@ impl Places {
         Ok(())
     }
 
-    /// The free area whose way to a target is the shortest, with that target.
+    /// The free area whose way to a target is the shortest, with that target; where every way is
+    /// blocked, one that crosses what lies close to the target, as its own outline may.
     fn best(&self, label: &Label) -> Option<(Area, Point)> {
         let white = match label.room {
             Room::Any => None,
-            Room::Above => self.best_on(label, Ground::White),
+            Room::Above => self.best_on(label, Ground::White, NEAR),
         };
-        white.or_else(|| self.best_on(label, Ground::Shaded))
+        let mut nears = [NEAR, 3.0 * NEAR].into_iter();
+        white.or_else(|| nears.find_map(|near| self.best_on(label, Ground::Shaded, near)))
     }
 
-    fn best_on(&self, label: &Label, ground: Ground) -> Option<(Area, Point)> {
+    fn best_on(&self, label: &Label, ground: Ground, near: f64) -> Option<(Area, Point)> {
         const TARGETS: usize = 80;
         let targets = label
             .targets
@@ -165,7 +170,7 @@ impl Places {
                 let way = distance(start, target);
                 let allowed = label.room != Room::Above || area.to.1 <= target.1;
                 let better = best.is_none_or(|(least, _, _)| way < least - 1e-6);
-                if allowed && better && self.is_clear(start, target) {
+                if allowed && better && self.is_clear(start, target, near) {
                     best = Some((way, area, target));
                 }
             }
@@ -173,18 +178,25 @@ impl Places {
         best.map(|(_, area, target)| (area, target))
     }
 
-    /// Whether the way to a target crosses nothing until just before it.
-    fn is_clear(&self, start: Point, target: Point) -> bool {
-        const NEAR: f64 = 8.0;
+    /// Whether the way to a target crosses nothing until `near` it.
+    fn is_clear(&self, start: Point, target: Point, near: f64) -> bool {
         let way = distance(start, target);
-        if way <= NEAR {
+        if way <= near {
             return true;
         }
-        let mut parts = steps(0.0, 1.0 - NEAR / way, CELL / way);
-        parts.all(|part| {
-            let at = between(start, target, part);
-            self.is_free(&Area::around(at, at, 0.0), Ground::Shaded)
-        })
+        // From the target outwards: what is in the way mostly lies close to it.
+        let mut parts = steps(near / way, 1.0, CELL / way);
+        parts.all(|part| self.at(between(target, start, part)) <= Ground::Shaded)
+    }
+
+    /// What lies under a point; nothing beyond the panel.
+    fn at(&self, point: Point) -> Ground {
+        let (across, down) = (
+            cells(point.0 - LEFT).min(self.across - 1),
+            cells(point.1 - self.panel.top),
+        );
+        let cell = self.ground.get(down * self.across + across);
+        cell.copied().unwrap_or(Ground::White)
     }
 
     fn candidates(&self, (width, height): Point) -> impl Iterator<Item = Area> + use<> {
@@ -290,8 +302,8 @@ mod tests {
     fn a_leader_crosses_no_line() {
         let mut places = Places::new(SPECTRA);
         places.take_line(&[(LEFT, 200.0), (RIGHT, 260.0)]);
-        assert!(!places.is_clear((500.0, 100.0), (500.0, 400.0)));
-        assert!(places.is_clear((500.0, 100.0), (500.0, 222.0)));
+        assert!(!places.is_clear((500.0, 100.0), (500.0, 400.0), NEAR));
+        assert!(places.is_clear((500.0, 100.0), (500.0, 222.0), NEAR));
     }
 
     #[test]

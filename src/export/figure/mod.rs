@@ -98,6 +98,9 @@ mod tests {
             "computed gap 3.59 ± 0.19 eV",
             "photoemission",
             "inverse photoemission",
+            "computed density,",
+            "fitted model",
+            "background",
             "residual (σ)",
         ] {
             assert!(

@@ -1,10 +1,11 @@
 //! Measured minus model in standard uncertainties, within the fitted windows only.
 
 use super::Error;
-use super::canvas::{Anchor, Canvas, Stroke, Type};
+use super::canvas::{Anchor, Canvas, Point, Stroke, Type, text_width};
 use super::curve::{Scale, stride};
 use super::frame::{Frame, LEFT, RESIDUALS, RIGHT};
-use super::palette::{BAND, HAIR, INK, TICK, TITLE, side};
+use super::palette::{BAND, HAIR, INK, SOFT, TICK, TITLE, side};
+use crate::export::words::typeset;
 use crate::schema::{Curves, Side, SideCurve};
 
 /// Draws the panel.
@@ -30,10 +31,31 @@ pub(super) fn draw(canvas: &mut Canvas, frame: &Frame, curves: &Curves) -> Resul
     for curve in &curves.sides {
         points(canvas, &scale, curve)?;
     }
+    key(canvas, frame, curves)?;
     axis(canvas, &scale)
 }
 
-/// The end of the scale: all residuals, but 3.5 at least and 8 at most; what is beyond lies on it.
+/// What the band is, where there is room beside the windows.
+fn key(canvas: &mut Canvas, frame: &Frame, curves: &Curves) -> Result<(), Error> {
+    const TEXT: &str = "grey: ±2 σ";
+    let width = text_width(TEXT, TICK) + 16.0;
+    let windows = || curves.sides.iter().map(|curve| window(curve, frame));
+    let first = windows().fold(f64::INFINITY, |least, (start, _)| least.min(start));
+    let last = windows().fold(f64::NEG_INFINITY, |most, (_, stop)| most.max(stop));
+    let (x, anchor) = if curves.sides.is_empty() {
+        return Ok(());
+    } else if frame.x(last) + width <= RIGHT {
+        (RIGHT - 8.0, Anchor::End)
+    } else if frame.x(first) - width >= LEFT {
+        (LEFT + 8.0, Anchor::Start)
+    } else {
+        return Ok(());
+    };
+    let at = (x, RESIDUALS.top + TICK);
+    canvas.text(TEXT, at, &Type::new(SOFT, TICK, anchor))
+}
+
+/// The end of the scale: all residuals, but 3.5 at least and 8 at most; what is beyond is an arrow at it.
 fn limit(curves: &Curves) -> f64 {
     let fitted = curves.sides.iter().flat_map(residuals);
     let largest = fitted.map(|(_, value)| value.abs()).fold(0.0, f64::max);
@@ -64,6 +86,10 @@ fn points(canvas: &mut Canvas, scale: &Scale, curve: &SideCurve) -> Result<(), E
     let shown = residuals(curve).filter(|(energy, _)| scale.frame.holds(*energy));
     for (energy, value) in shown.step_by(stride(curve, scale.frame)) {
         let at = scale.point(energy, scale.within(value));
+        if scale.within(value).total_cmp(&value).is_ne() {
+            canvas.area(&arrow(at, value.signum()), color)?;
+            continue;
+        }
         match curve.side {
             Side::Valence => canvas.disc(at, RADIUS, color)?,
             Side::Conduction => canvas.ring(at, RADIUS, Stroke { color, width: 1.2 })?,
@@ -72,16 +98,24 @@ fn points(canvas: &mut Canvas, scale: &Scale, curve: &SideCurve) -> Result<(), E
     Ok(())
 }
 
+/// A head at the end of the scale that points beyond it, upwards for a positive sign.
+fn arrow((x, y): Point, sign: f64) -> [Point; 3] {
+    let foot = y + 7.0 * sign;
+    [(x, y), (x - 3.2, foot), (x + 3.2, foot)]
+}
+
 fn axis(canvas: &mut Canvas, scale: &Scale) -> Result<(), Error> {
     let ink = Stroke {
         color: INK,
         width: 1.1,
     };
     canvas.frame((LEFT, RESIDUALS.top), (RIGHT, RESIDUALS.bottom), ink)?;
-    for (value, text) in [(-2.0, "\u{2212}2"), (0.0, "0"), (2.0, "2")] {
+    let step = if scale.span.1 > 5.0 { 5.0 } else { 2.0 };
+    for value in [-step, 0.0, step] {
         let y = RESIDUALS.y(value, scale.span);
+        let text = typeset(&value.to_string());
         canvas.line((LEFT - 6.0, y), (LEFT, y), ink)?;
-        canvas.text(text, (LEFT - 10.0, y), &Type::new(INK, TICK, Anchor::End))?;
+        canvas.text(&text, (LEFT - 10.0, y), &Type::new(INK, TICK, Anchor::End))?;
     }
     let look = Type {
         upright: true,

@@ -367,7 +367,10 @@ fn labels(scale: &Scale, sides: &[Unit], shapes: &[Shape]) -> Vec<Label> {
         &["computed density,", "shifted and broadened"],
         inside,
     ));
-    labels.push(plain(&["fitted model"], along(scale, sides, model, true)));
+    labels.push(plain(
+        &["fitted model", "(dashed: not fitted)"],
+        along(scale, sides, model, true),
+    ));
     labels.push(plain(
         &["background"],
         along(scale, sides, background, false),

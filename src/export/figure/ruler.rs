@@ -109,18 +109,24 @@ fn rule(canvas: &mut Canvas, frame: &Frame) -> Result<(), Error> {
 }
 
 fn titles(canvas: &mut Canvas, frame: &Frame) -> Result<(), Error> {
-    const Y: f64 = 704.0;
+    const Y: f64 = 708.0;
     let title = match frame.reference {
-        Reference::Fermi => energy_title(frame.reference).replace('-', "\u{2212}"),
+        Reference::Fermi => typeset(energy_title(frame.reference)),
         other => format!("{}, from {}", energy_title(other), counted_from(other)),
     };
+    let soft = |anchor| Type::new(SOFT, TICK, anchor);
+    canvas.text(
+        "\u{2190} more strongly bound",
+        (LEFT, Y),
+        &soft(Anchor::Start),
+    )?;
     canvas.text(
         &title,
         (f64::midpoint(LEFT, RIGHT), Y),
         &Type::new(INK, TITLE, Anchor::Middle),
     )?;
-    let note = "edges and gaps with 95 % intervals";
-    canvas.text(note, (RIGHT, Y), &Type::new(SOFT, TICK, Anchor::End))
+    let note = "± and bars: 95 % intervals";
+    canvas.text(note, (RIGHT, Y), &soft(Anchor::End))
 }
 
 /// A gap as a length on the ruler.

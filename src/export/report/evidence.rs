@@ -9,7 +9,12 @@ use crate::schema::{
 };
 
 fn shown(quantity: Option<&Quantity>) -> Markup {
-    cell(quantity.map_or_else(String::new, |quantity| typeset(&value(quantity))))
+    cell(quantity.map_or_else(String::new, |quantity| {
+        if quantity.value == 0.0 && quantity.standard_uncertainty == Some(0.0) {
+            return "0".to_owned();
+        }
+        typeset(&value(quantity))
+    }))
 }
 
 /// Every protocol's reading: a row for each side and one for the gap.
@@ -65,7 +70,12 @@ pub(super) fn fits(result: &ResultDocument) -> Markup {
     };
     let rows: Vec<Vec<Markup>> = LINES.iter().map(line).collect();
     html! {
-        @if !result.fits.is_empty() { (table("Fits", &heads, &rows)) }
+        @if !result.fits.is_empty() {
+            (table("Fits", &heads, &rows))
+            p.note { "Chi-square and runs test weigh in that the levels stand at a finite number of "
+                "k-points, which moves neighbouring channels together. The residuals in the figure and "
+                "the files are over the uncertainty of the data alone, and can be larger." }
+        }
     }
 }
 
@@ -90,7 +100,7 @@ const LINES: [(&str, Show); 10] = [
     ("Channels; degrees of freedom", |fit| {
         format!("{}; {}", fit.channels, fit.degrees_of_freedom)
     }),
-    ("Statistics", |fit| fit.statistics.clone()),
+    ("Statistics of the data", |fit| fit.statistics.clone()),
     ("Reduced chi-square", |fit| {
         format!("{:.2}", fit.reduced_chi_square)
     }),

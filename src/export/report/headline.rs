@@ -4,9 +4,9 @@ use maud::{Markup, html};
 
 use super::table::{Head, cell, table};
 use crate::export::words::{
-    difference_interval, interval, interval_text, typeset, value, variance_shares,
+    difference_interval, interval, interval_text, typeset, unbroken, value, variance_shares,
 };
-use crate::quantity::rounded;
+use crate::quantity::{decimals_for, rounded};
 use crate::schema::{BudgetRow, Evaluation, Expanded, Quantity, ResultDocument};
 
 /// The numbers that the verdict rests on.
@@ -59,7 +59,7 @@ pub(super) fn numbers(result: &ResultDocument) -> Markup {
         ]);
     }
     rows.push(vec![
-        cell("Largest expanded uncertainty that may read as agreement"),
+        cell("Tolerance: the largest expanded uncertainty that can show agreement"),
         cell(format!("{} eV", result.tolerance_ev)),
         cell(""),
     ]);
@@ -72,21 +72,16 @@ pub(super) fn numbers(result: &ResultDocument) -> Markup {
 }
 
 fn quantity(name: &str, quantity: Option<&Quantity>) -> Vec<Markup> {
-    let ends = quantity.and_then(interval).map(interval_text);
+    let stated = quantity.map(|quantity| format!("{} eV", typeset(&value(quantity))));
+    let ends = quantity.map(|quantity| match interval(quantity) {
+        Some(ends) => typeset(&interval_text(ends)),
+        None => "not stated".to_owned(),
+    });
     vec![
         cell(name),
-        cell(quantity.map_or_else(|| "not determined".to_owned(), stated)),
-        cell(ends.map_or_else(String::new, |text| typeset(&text))),
+        cell(stated.unwrap_or_else(|| "not determined".to_owned())),
+        cell(ends.unwrap_or_default()),
     ]
-}
-
-fn stated(quantity: &Quantity) -> String {
-    let note = if quantity.standard_uncertainty.is_none() {
-        " (uncertainty not stated)"
-    } else {
-        ""
-    };
-    format!("{} eV{note}", typeset(&value(quantity)))
 }
 
 /// The sum of the corrections, rounded as the corrected gap is.
@@ -103,13 +98,19 @@ fn corrections(gap: Option<&Quantity>, corrected: Option<&Quantity>) -> Option<V
 
 fn expanded(expanded: &Expanded) -> Vec<Markup> {
     let u = expanded.expanded_uncertainty_ev;
-    let freedom = expanded.effective_degrees_of_freedom;
-    let freedom = freedom.map_or_else(|| "very many".to_owned(), |freedom| format!("{freedom:.0}"));
     vec![
-        html! { "Expanded uncertainty of the difference, U" sub { "95" } },
+        html! {
+            "Expanded uncertainty of the difference, U" sub { "95" }
+            " (k = " (format!("{:.2}", expanded.coverage_factor))
+            ", ν" sub { "eff" } " = " (freedom(expanded.effective_degrees_of_freedom)) ")"
+        },
         cell(format!("{} eV", rounded(u, u))),
-        html! { "k = " (format!("{:.2}", expanded.coverage_factor)) ", ν" sub { "eff" } " = " (freedom) },
+        cell(""),
     ]
+}
+
+fn freedom(degrees: Option<f64>) -> String {
+    degrees.map_or_else(|| "∞".to_owned(), |degrees| format!("{degrees:.0}"))
 }
 
 /// What a reader should know.
@@ -123,7 +124,7 @@ pub(super) fn cautions(result: &ResultDocument) -> Markup {
                 dl.cautions {
                     @for caution in &result.cautions {
                         dt { (caution.name) }
-                        dd { (caution.message) }
+                        dd { (unbroken(&caution.message)) }
                     }
                 }
             }
@@ -145,23 +146,73 @@ pub(super) fn budget(result: &ResultDocument) -> Markup {
         Head("Basis", false),
     ];
     let shares = variance_shares(result);
-    let rows: Vec<Vec<Markup>> = result.budget.iter().zip(shares).map(contribution).collect();
-    table("Uncertainty budget: standard uncertainties", &heads, &rows)
+    let decimals = decimals_for(combined(result.difference.as_ref(), result));
+    let rows = result.budget.iter().zip(shares);
+    let mut rows: Vec<Vec<Markup>> = rows.map(|row| contribution(row, decimals)).collect();
+    if !rows.is_empty() {
+        rows.push(total(result, decimals));
+    }
+    table(
+        "Uncertainty budget: standard uncertainties, Type A or B of the GUM",
+        &heads,
+        &rows,
+    )
 }
 
-fn contribution((row, share): (&BudgetRow, f64)) -> Vec<Markup> {
+/// The standard uncertainty of a quantity, else the root of the sum of the rows' squares.
+fn combined(quantity: Option<&Quantity>, result: &ResultDocument) -> f64 {
+    let sum = || {
+        result
+            .budget
+            .iter()
+            .map(|row| row.difference_ev.powi(2))
+            .sum::<f64>()
+            .sqrt()
+    };
+    quantity
+        .and_then(|quantity| quantity.standard_uncertainty)
+        .unwrap_or_else(sum)
+}
+
+fn total(result: &ResultDocument, decimals: usize) -> Vec<Markup> {
+    let measured = &result.measured;
+    let of = |quantity: &Option<Quantity>| {
+        let u = quantity.and_then(|quantity| quantity.standard_uncertainty);
+        html! { strong { (u.map_or_else(String::new, |u| fixed(u, decimals))) } }
+    };
+    let freedom_of_all = result
+        .expanded
+        .as_ref()
+        .map(|all| freedom(all.effective_degrees_of_freedom));
+    vec![
+        html! { strong { "combined" } },
+        cell(""),
+        of(&measured.valence_edge),
+        of(&measured.conduction_edge),
+        of(&measured.gap),
+        of(&result.difference),
+        cell(""),
+        cell(freedom_of_all.unwrap_or_default()),
+        cell("root of the sum of the squares"),
+    ]
+}
+
+/// An uncertainty with the decimals of its column; one that they do not show is called less.
+fn fixed(u: f64, decimals: usize) -> String {
+    let text = format!("{u:.decimals$}");
+    let shows = text.chars().any(|c| c.is_ascii_digit() && c != '0');
+    if u == 0.0 || decimals == 0 || shows || !u.is_finite() {
+        return if u == 0.0 { "0".to_owned() } else { text };
+    }
+    format!("<0.{:0>decimals$}", 1)
+}
+
+fn contribution((row, share): (&BudgetRow, f64), decimals: usize) -> Vec<Markup> {
     let kind = match row.evaluation {
         Evaluation::A => "A",
         Evaluation::B => "B",
     };
-    let freedom = row.degrees_of_freedom;
-    let number = |u: f64| {
-        cell(if u == 0.0 {
-            "0".to_owned()
-        } else {
-            rounded(u, u)
-        })
-    };
+    let number = |u: f64| cell(fixed(u, decimals));
     let (difference, share) = if row.stated {
         (
             number(row.difference_ev),
@@ -178,7 +229,7 @@ fn contribution((row, share): (&BudgetRow, f64)) -> Vec<Markup> {
         number(row.gap_ev),
         difference,
         share,
-        cell(freedom.map_or_else(|| "very many".to_owned(), |freedom| format!("{freedom:.0}"))),
+        cell(freedom(row.degrees_of_freedom)),
         cell(row.basis.as_str()),
     ]
 }

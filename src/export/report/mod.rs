@@ -12,7 +12,7 @@ mod table;
 use maud::{DOCTYPE, Markup, PreEscaped, html};
 
 use super::figure::{describe, inline};
-use super::words::{agreement, plain};
+use super::words::{agreement, plain, unbroken};
 use crate::schema::ResultDocument;
 
 const POLICY: &str = "default-src 'none'; style-src 'unsafe-inline'; img-src data:";
@@ -60,7 +60,7 @@ fn body(result: &ResultDocument, title: &str, figure: &str) -> Markup {
             span.mark aria-hidden="true" { (mark.1) }
             div {
                 p.answer { (agreement(result.verdict.agrees)) "." }
-                p { (result.verdict.statement) }
+                p { (unbroken(&result.verdict.statement)) }
             }
         }
         (headline::numbers(result))
@@ -68,7 +68,8 @@ fn body(result: &ResultDocument, title: &str, figure: &str) -> Markup {
             div.card { (PreEscaped(inline(figure))) }
             figcaption { (describe(result)) " Points: measured, with standard uncertainties. "
                 "Solid line: model in the fitted window, dashed beyond it. Dotted: background. "
-                "Grey band: ±2 σ." }
+                "Residuals: measured minus model over the uncertainty of the data; arrows point to those "
+                "beyond the scale. Grey band: ±2 σ." }
         }
         (headline::cautions(result))
         (headline::budget(result))

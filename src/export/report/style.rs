@@ -19,8 +19,8 @@ background:var(--tint);padding:.9rem 1rem;overflow-wrap:anywhere}
 .mark{color:var(--mark);font-size:2.2rem;line-height:1;font-weight:700}
 .yes{--mark:var(--yes)}.no{--mark:var(--no)}.open{--mark:var(--open)}
 figure{margin:1.75rem 0}
-.card{background:#fff;border:1px solid var(--line);padding:.5rem}
-.card svg{display:block;width:100%;height:auto}
+.card{background:#fff;border:1px solid var(--line);padding:.5rem;overflow-x:auto}
+.card svg{display:block;width:100%;min-width:40rem;height:auto}
 figcaption,.note{color:var(--soft);font-size:.9rem;margin:.5rem 0 0}
 .scroll{overflow-x:auto;margin:1.75rem 0 0}
 table{border-collapse:collapse;width:100%;font-size:.92rem;font-variant-numeric:tabular-nums}
@@ -36,7 +36,9 @@ th small{color:var(--soft);border:1px solid var(--line);padding:0 .3em;white-spa
 .steps{padding-left:1.4rem;overflow-wrap:anywhere}
 code{font-size:.82em;overflow-wrap:anywhere}
 footer{margin-top:2.5rem;border-top:1px solid var(--line);padding-top:.75rem;color:var(--soft)}
-@media print{:root{--ink:#000;--soft:#333;--paper:#fff;--line:#999;--tint:#fff;--yes:#1f4e92;
+@media (max-width:40rem){table{font-size:.82rem}th,td{padding:.3rem .35rem}.mark{display:none}
+main{padding:1rem .75rem 2rem}}
+@media print{.card svg{min-width:0}:root{--ink:#000;--soft:#333;--paper:#fff;--line:#999;--tint:#fff;--yes:#1f4e92;
 --no:#96390d;--open:#333}body{font-size:10pt}main{max-width:none;padding:0}
 .scroll{overflow:visible}table{font-size:8pt}.card{border:0;padding:0}
 figure,tr,.verdict{break-inside:avoid}}
