@@ -82,15 +82,7 @@ impl Spread {
         let [shift, variance, gamma, step] = derivatives.each_ref().map(half);
         let amplitude = model.dot(&inverse) / p[1];
         let gradient = DVector::from_column_slice(&[shift, amplitude, variance, gamma, 0.0, step]);
-        let move_by = cov * gradient;
-        let mut moved = p;
-        for (parameter, by) in moved.iter_mut().zip(move_by.iter()) {
-            *parameter += by;
-        }
-        for bounded in &mut moved[1..] {
-            *bounded = bounded.max(0.0);
-        }
-        moved
+        bounded_step(p, cov * gradient, cov)
     }
 
     /// How much the shift moves with each channel: the first row of (J'V^-1 J)^-1 J'V^-1.
@@ -101,6 +93,34 @@ impl Spread {
             .tr_solve_lower_triangular_mut(&mut gains);
         gains
     }
+}
+
+/// The step, where it would take a parameter below zero stopped there and the others moved on as the
+/// covariance binds them to it.
+fn bounded_step(
+    p: [f64; PARAMETERS],
+    mut step: DVector<f64>,
+    cov: &DMatrix<f64>,
+) -> [f64; PARAMETERS] {
+    let mut cov = cov.clone();
+    for _ in 1..PARAMETERS {
+        let below = |i: &usize| p[*i] + step[*i] < -1e-12 && cov[(*i, *i)] > 0.0;
+        let Some(held) = (1..PARAMETERS).find(below) else {
+            break;
+        };
+        let tie = cov.column(held) / cov[(held, held)];
+        step += &tie * (-p[held] - step[held]);
+        let variance = cov[(held, held)];
+        cov -= &tie * tie.transpose() * variance;
+    }
+    let mut moved = p;
+    for (index, (parameter, by)) in moved.iter_mut().zip(step.iter()).enumerate() {
+        *parameter += by;
+        if index > 0 {
+            *parameter = parameter.max(0.0);
+        }
+    }
+    moved
 }
 
 /// Number of intervals between the values of kappa.
