@@ -1,8 +1,10 @@
-//! How a line splits into cells, and which delimiter a table has. The one scanner serves reading and
-//! locating alike, so that a position is always that of the text that was read.
+//! How a line splits into cells, and which delimiter a table has. The csv crate reads delimited
+//! cells; where a cell stands is found by scanning its one line again.
 
-use std::borrow::Cow;
+use std::io::Cursor;
 use std::ops::Range;
+
+use csv::StringRecord;
 
 use super::Source;
 use super::number::{has_decimal_comma, number};
@@ -43,113 +45,121 @@ impl Delimiter {
     }
 }
 
-/// One cell: the bytes of its content, without blanks and quotes around it.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub(super) struct Cell {
-    pub span: Range<usize>,
-    pub quoted: bool,
+/// A quoted cell that csv would read with text from elsewhere: the bytes, and what is wrong.
+pub(super) type Unquotable = (Range<usize>, &'static str);
+
+/// Splits lines of a source into the texts of their cells: by the csv crate, or at blanks.
+pub(super) struct Splitter<'a> {
+    source: &'a Source,
+    delimiter: Delimiter,
+    csv: csv::Reader<Cursor<&'a str>>,
+    record: StringRecord,
 }
 
-impl Cell {
-    /// Its text, with doubled quotes undone.
-    pub fn text<'a>(&self, source: &'a Source) -> Cow<'a, str> {
-        let text = source.slice(self.span.clone());
-        if self.quoted && text.contains("\"\"") {
-            Cow::Owned(text.replace("\"\"", "\""))
-        } else {
-            Cow::Borrowed(text)
+impl<'a> Splitter<'a> {
+    pub fn new(source: &'a Source, delimiter: Delimiter) -> Self {
+        // Where lines that are no rows stand between, the buffer is filled anew.
+        let csv = csv::ReaderBuilder::new()
+            .has_headers(false)
+            .flexible(true)
+            .delimiter(delimiter.byte().unwrap_or(b','))
+            .buffer_capacity(1_024)
+            .from_reader(Cursor::new(source.text()));
+        Self {
+            source,
+            delimiter,
+            csv,
+            record: StringRecord::new(),
         }
+    }
+
+    /// The cells of a line, whose range ends where the line ends, with blanks around them.
+    pub fn cells(&mut self, line: &Range<usize>) -> Result<&StringRecord, Unquotable> {
+        let text = self.source.slice(line.clone());
+        if self.delimiter == Delimiter::Blanks {
+            self.record.clear();
+            text.split(BLANKS)
+                .filter(|word| !word.is_empty())
+                .for_each(|word| self.record.push_field(word));
+            return Ok(&self.record);
+        }
+        if text.contains('"') {
+            // csv takes text after a closed quote, and the next line into an open one.
+            spans(text, line.start, self.delimiter)?;
+        }
+        let mut start = csv::Position::new();
+        start.set_byte(line.start as u64);
+        self.csv
+            .seek(start)
+            .and_then(|()| self.csv.read_record(&mut self.record))
+            .map_err(|_| (line.clone(), "this line cannot be split into cells"))?;
+        Ok(&self.record)
     }
 }
 
-/// A quoted cell that does not end, or that does not end its field: the bytes, and what is wrong.
-pub(super) type Unquotable = (Range<usize>, &'static str);
+const BLANKS: [char; 2] = [' ', '\t'];
 
-/// Splits a line that starts at byte `base` into `cells`, which is emptied first.
-pub(super) fn split(
+/// The bytes of the cells' contents in a line that starts at byte `base`, without the quotes and
+/// blanks around them.
+pub(super) fn spans(
     line: &str,
     base: usize,
     delimiter: Delimiter,
-    cells: &mut Vec<Cell>,
-) -> Result<(), Unquotable> {
-    cells.clear();
-    if let Some(byte) = delimiter.byte() {
-        return split_at(line.as_bytes(), base, byte, cells);
-    }
-    split_blanks(line.as_bytes(), base, cells);
-    Ok(())
-}
-
-fn is_blank(byte: u8) -> bool {
-    matches!(byte, b' ' | b'\t')
-}
-
-fn split_blanks(line: &[u8], base: usize, cells: &mut Vec<Cell>) {
-    let mut at = 0;
-    while let Some(skip) = line[at..].iter().position(|&byte| !is_blank(byte)) {
-        let start = at + skip;
-        let length = line[start..].iter().position(|&byte| is_blank(byte));
-        at = length.map_or(line.len(), |length| start + length);
-        cells.push(Cell {
-            span: base + start..base + at,
-            quoted: false,
-        });
-    }
-}
-
-fn split_at(
-    line: &[u8],
-    base: usize,
-    delimiter: u8,
-    cells: &mut Vec<Cell>,
-) -> Result<(), Unquotable> {
-    let blank = |at: usize| is_blank(line[at]) && line[at] != delimiter;
-    let mut at = 0;
+) -> Result<Vec<Range<usize>>, Unquotable> {
+    let Some(byte) = delimiter.byte() else {
+        let words = line.split(BLANKS).filter(|word| !word.is_empty());
+        return Ok(words.map(|word| span_of(word.trim(), line, base)).collect());
+    };
+    let mut spans = Vec::new();
+    let mut rest = line;
     loop {
-        while at < line.len() && blank(at) {
-            at += 1;
-        }
-        if line.get(at) == Some(&b'"') {
-            let end = quoted_end(line, at + 1).ok_or((
-                base + at..base + line.len(),
-                "a quoted cell does not end on its line",
-            ))?;
-            cells.push(Cell {
-                span: base + at + 1..base + end,
-                quoted: true,
-            });
-            at = end + 1;
-            while at < line.len() && blank(at) {
-                at += 1;
-            }
-            if at < line.len() && line[at] != delimiter {
-                return Err((base + at..base + at + 1, "text follows a quoted cell"));
-            }
+        let (content, length) = if rest.starts_with('"') {
+            quoted(rest, char::from(byte)).map_err(|(at, what)| {
+                let from = base + line.len() - rest.len() + at;
+                (from..base + line.len(), what)
+            })?
         } else {
-            let start = at;
-            let length = line[at..].iter().position(|&byte| byte == delimiter);
-            at = length.map_or(line.len(), |length| start + length);
-            let kept = (start..at).rev().find(|&last| !blank(last));
-            cells.push(Cell {
-                span: base + start..base + kept.map_or(start, |last| last + 1),
-                quoted: false,
-            });
+            let length = rest.find(char::from(byte)).unwrap_or(rest.len());
+            (&rest[..length], length)
+        };
+        let span = span_of(content.trim(), line, base);
+        if !rest.starts_with('"') && content.trim_start().starts_with('"') {
+            return Err((span, "blanks stand before this quoted cell: remove them"));
         }
-        if at >= line.len() {
-            return Ok(());
+        spans.push(span);
+        match rest.get(length + 1..) {
+            Some(next) => rest = next,
+            None => return Ok(spans),
         }
-        at += 1;
     }
 }
 
-/// The byte of the quote that ends a quoted cell, whose content starts at `at`.
-fn quoted_end(line: &[u8], mut at: usize) -> Option<usize> {
+/// The bytes of a part of a line that starts at byte `base`.
+fn span_of(part: &str, line: &str, base: usize) -> Range<usize> {
+    let start = base + part.as_ptr().addr() - line.as_ptr().addr();
+    start..start + part.len()
+}
+
+/// The content of the quoted cell that starts a text, and the length of its field.
+fn quoted(text: &str, delimiter: char) -> Result<(&str, usize), (usize, &'static str)> {
+    let bytes = text.as_bytes();
+    let mut end = 1;
     loop {
-        at += line.get(at..)?.iter().position(|&byte| byte == b'"')?;
-        if line.get(at + 1) != Some(&b'"') {
-            return Some(at);
+        match text[end..].find('"') {
+            None => return Err((0, "a quoted cell does not end on its line")),
+            Some(more) => end += more,
         }
-        at += 2;
+        if bytes.get(end + 1) != Some(&b'"') {
+            break;
+        }
+        end += 2;
+    }
+    let length = text[end..]
+        .find(delimiter)
+        .map_or(text.len(), |more| end + more);
+    match text[end + 1..length].trim() {
+        "" => Ok((&text[1..end], length)),
+        _ => Err((end + 1, "text follows a quoted cell")),
     }
 }
 
@@ -168,10 +178,10 @@ pub(super) fn looks_numeric(line: &str) -> bool {
 
 /// The delimiter that makes most cells of the rows numbers (with a decimal comma too, so that it can
 /// be pointed at), and the number of fields that most rows have under it.
-pub(super) fn conclude(rows: &[&str]) -> (Delimiter, usize) {
+pub(super) fn conclude(source: &Source, rows: &[Range<usize>]) -> (Delimiter, usize) {
     let mut best = (Delimiter::Blanks, 0, -1.0);
     for delimiter in Delimiter::ALL {
-        let (share, fields) = explained(rows, delimiter);
+        let (share, fields) = explained(source, rows, delimiter);
         if share > best.2 || (share >= best.2 && fields > best.1) {
             best = (delimiter, fields, share);
         }
@@ -180,18 +190,20 @@ pub(super) fn conclude(rows: &[&str]) -> (Delimiter, usize) {
 }
 
 /// The share of the cells that are numbers, and the most common number of fields.
-fn explained(rows: &[&str], delimiter: Delimiter) -> (f64, usize) {
-    let mut cells = Vec::new();
+fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> (f64, usize) {
+    let mut splitter = Splitter::new(source, delimiter);
     let (mut all, mut numbers) = (0u32, 0u32);
     let mut counts = std::collections::BTreeMap::<usize, usize>::new();
     for row in rows {
-        if split(row, 0, delimiter, &mut cells).is_err() {
-            all += 1;
-            continue;
-        }
+        // A row with wrong quotes is refused later; here it still shows its delimiter.
+        let plain = || source.slice(row.clone()).replace('"', "");
+        let plain = splitter.cells(row).is_err().then(plain);
+        let cells: Vec<&str> = match (&plain, delimiter.byte()) {
+            (Some(text), Some(byte)) => text.split(char::from(byte)).collect(),
+            _ => splitter.record.iter().collect(),
+        };
         *counts.entry(cells.len()).or_default() += 1;
-        for cell in &cells {
-            let text = &row[cell.span.clone()];
+        for text in cells.into_iter().map(str::trim) {
             all += u32::from(!text.is_empty());
             numbers += u32::from(number(text).is_some() || has_decimal_comma(text));
         }
@@ -225,7 +237,8 @@ mod tests {
             ("\"a;b\",1,2", Comma, 3),
             ("5", Blanks, 1),
         ] {
-            let concluded = conclude(&[row, row]);
+            let source = Source::from_text("t", row);
+            let concluded = conclude(&source, &[0..row.len(), 0..row.len()]);
             // One field: any delimiter reads it alike.
             assert_eq!(concluded.1, fields, "{row}");
             assert!(
@@ -237,16 +250,23 @@ mod tests {
 
     #[test]
     fn quotes() {
-        let mut cells = Vec::new();
-        let line = r#" "a ""b"", c" , 2,"#;
-        split(line, 10, Delimiter::Comma, &mut cells).unwrap();
-        let texts: Vec<_> = cells
+        let line = r#""a ""b"", c" , 2,"#;
+        let spans_of = |line| spans(line, 10, Delimiter::Comma);
+        let texts: Vec<_> = spans_of(line)
+            .unwrap()
             .iter()
-            .map(|cell| &line[cell.span.start - 10..cell.span.end - 10])
+            .map(|span| &line[span.start - 10..span.end - 10])
             .collect();
         assert_eq!(texts, [r#"a ""b"", c"#, "2", ""]);
-        assert!(split(r#"1,"ab"#, 0, Delimiter::Comma, &mut cells).is_err());
-        assert!(split(r#""ab"c,1"#, 0, Delimiter::Comma, &mut cells).is_err());
+        for (line, span, what) in [
+            (r#"1,"ab"#, 12..15, "does not end"),
+            (r#""ab"c,1"#, 14..17, "follows"),
+            (r#"1, "ab",2"#, 13..17, "before"),
+        ] {
+            let (found, why) = spans_of(line).unwrap_err();
+            assert_eq!(found, span, "{line}");
+            assert!(why.contains(what), "{line}: {why}");
+        }
     }
 
     #[test]
@@ -260,28 +280,44 @@ mod tests {
     }
 
     proptest! {
-        /// The oracle is the csv crate.
+        /// csv reads every cell; the span of each holds what csv read, and no other line is touched.
         #[test]
-        fn delimited_cells_are_those_of_csv(fields in prop::collection::vec("[a-z0-9\",;µ]{0,6}", 2..6)) {
+        fn spans_hold_what_csv_reads(
+            lines in prop::collection::vec("[\" \t,;aµ1.\u{a0}]{1,20}", 1..6),
+            end in prop::sample::select(vec!["\n", "\r\n", "\r", "\n\n# \"\n"]),
+        ) {
+            let text = lines.join(end);
+            let source = Source::from_text("t", &text);
+            for delimiter in Delimiter::ALL {
+                let mut splitter = Splitter::new(&source, delimiter);
+                for line in source.lines_from(0).filter(|line| line.start < line.end) {
+                    let line = line.start..line.end;
+                    let spans = spans(source.slice(line.clone()), line.start, delimiter);
+                    match (splitter.cells(&line), spans) {
+                        (Ok(cells), Ok(spans)) => {
+                            prop_assert_eq!(cells.len(), spans.len());
+                            for (cell, span) in cells.iter().map(str::trim).zip(spans) {
+                                let found = source.slice(span);
+                                prop_assert!(cell == found || cell == found.replace("\"\"", "\""));
+                            }
+                        }
+                        (Err(one), Err(other)) => prop_assert_eq!(one, other),
+                        (one, other) => prop_assert!(false, "{:?} {:?}", one.map(|_| ()), other),
+                    }
+                }
+            }
+        }
+
+        /// What csv writes comes back.
+        #[test]
+        fn written_cells_come_back(fields in prop::collection::vec("[a-z0-9\",;µ]{0,6}", 2..6)) {
             let mut writer = csv::WriterBuilder::new().from_writer(Vec::new());
             writer.write_record(&fields).unwrap();
             let line = String::from_utf8(writer.into_inner().unwrap()).unwrap();
             let source = Source::from_text("t", &line);
-            let mut cells = Vec::new();
-            split(line.trim_end_matches('\n'), 0, Delimiter::Comma, &mut cells).unwrap();
-            let texts: Vec<String> = cells.iter().map(|c| c.text(&source).into_owned()).collect();
-            prop_assert_eq!(texts, fields);
-        }
-
-        #[test]
-        fn splitting_never_panics(line in "[\" \t,;aµ1.]{0,30}") {
-            let mut cells = Vec::new();
-            for delimiter in Delimiter::ALL {
-                let _ = split(&line, 0, delimiter, &mut cells);
-                for cell in &cells {
-                    prop_assert!(line.get(cell.span.clone()).is_some());
-                }
-            }
+            let mut splitter = Splitter::new(&source, Delimiter::Comma);
+            let cells = splitter.cells(&(0..line.len() - 1)).unwrap();
+            prop_assert!(cells.iter().eq(fields.iter().map(String::as_str)));
         }
     }
 }

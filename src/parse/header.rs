@@ -58,16 +58,30 @@ pub(super) fn read(cell: &str, kind: Kind) -> Reading {
 
 /// The cell with typographic signs in their plain form.
 fn plain(cell: &str) -> String {
-    cell.chars()
-        .filter(|c| !matches!(c, '$' | '\\' | '{' | '}'))
+    let plain = cell
+        .chars()
+        // Marks that cannot be seen are no part of a name.
+        .filter(|c| {
+            !matches!(
+                c,
+                '$' | '\\' | '{' | '}' | '\u{feff}' | '\u{200b}' | '\u{ad}'
+            )
+        })
         .map(|c| match c {
             '−' | '–' | '⁻' => '-',
             '\t' | '\u{a0}' => ' ',
             other => other,
         })
-        .collect::<String>()
-        .trim()
-        .to_owned()
+        .collect::<String>();
+    let plain = plain.trim();
+    // Brackets around the name itself, as in `(E - E_F) / eV`.
+    match plain
+        .strip_prefix('(')
+        .and_then(|rest| rest.split_once(')'))
+    {
+        Some((name, rest)) => format!("{name}{rest}"),
+        None => plain.to_owned(),
+    }
 }
 
 #[derive(Debug, Clone, Copy)]
@@ -95,17 +109,14 @@ fn parts(cell: &str) -> IResult<&str, Vec<Part<'_>>> {
 fn group(text: &str, kind: Kind, name: &mut String, reading: &mut Reading) {
     for piece in text.split([',', ';']).map(str::trim) {
         let zero = words::relation(piece).filter(|(before, ..)| before.is_empty());
-        let known = words::words(piece)
-            .iter()
-            .all(|word| words::tag(word, kind).is_some());
+        let words = words::words(piece);
+        let known = !words.is_empty() && words.iter().all(|word| words::tag(word, kind).is_some());
         if matches!(piece, "" | "E" | "k" | "ε") {
             continue;
         }
         if is_unit(piece) {
             reading.units.push(piece.to_owned());
-        } else if let Some((_, _, reference)) = zero {
-            reading.reference = Some(reference);
-        } else if known {
+        } else if known || zero.is_some() {
             name.push(' ');
             name.push_str(piece);
         } else {
@@ -124,6 +135,9 @@ fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
     let Some((name, direction)) = zero(name, reading) else {
         return;
     };
+    if is_formula(name, kind) {
+        return;
+    }
     let Some(tags) = tags(name, kind) else {
         return;
     };
@@ -132,11 +146,14 @@ fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
         && tags.contains(&Tag::Counts)
         && !tags.contains(&Tag::Rate);
     if reading.role == Some(Role::Energy) {
-        reading.axis = axis(&tags).or(match direction {
-            Some(Relation::Above) => Some(AxisKind::FinalState),
-            Some(Relation::Below) => Some(AxisKind::Binding),
-            _ => None,
-        });
+        reading.axis = match (axis(&tags), direction) {
+            (None, Some(Relation::Above)) => Some(AxisKind::FinalState),
+            (None, Some(Relation::Below)) => Some(AxisKind::Binding),
+            // Counted upwards by one word and downwards by another: not said.
+            (Some(AxisKind::Binding), Some(Relation::Above))
+            | (Some(AxisKind::Kinetic | AxisKind::FinalState), Some(Relation::Below)) => None,
+            (axis, _) => axis,
+        };
     }
     if direction == Some(Relation::Below) && kind == Kind::Levels {
         // Counted downwards: a level is counted upwards, so this is no energy of a level.
@@ -193,6 +210,26 @@ fn zero<'a>(name: &'a str, reading: &mut Reading) -> Option<(&'a str, Option<Rel
         }
     }
     Some((name, None))
+}
+
+/// Whether a name is computed with: a minus before it, a difference (`E - E_KS`), another sign (`∆E`,
+/// `%`, `√I`). It is then the name of something else.
+fn is_formula(name: &str, kind: Kind) -> bool {
+    let separates = |c: char| c.is_whitespace() || "_-.,:;'#@".contains(c);
+    let has_energy = |part: &str| {
+        let words = words::words(part);
+        words
+            .iter()
+            .any(|word| words::tag(word, kind) == Some(Tag::Energy))
+    };
+    let difference = |at: usize| {
+        let (left, right) = (&name[..at], &name[at + 1..]);
+        left.trim().is_empty()
+            || (left.ends_with(' ') && right.starts_with(' '))
+            || (has_energy(left) && has_energy(right))
+    };
+    name.contains(|c: char| !c.is_alphanumeric() && !separates(c))
+        || name.match_indices('-').any(|(at, _)| difference(at))
 }
 
 /// What the words of a name say; `None` where a word is not one of the trade's. After `@` stands
@@ -335,6 +372,13 @@ mod tests {
             "sigma_x (eV)",
             "E_QP (eV",
             "E QP raw",
+            "-E_QP (eV)",
+            "E_QP (eV, below E_F)",
+            "E - E_KS (eV)",
+            "E-E_KS (eV)",
+            "∆E_QP (eV)",
+            "|E_QP| (eV)",
+            "1/E_QP",
             "gap",
         ] {
             assert_eq!(levels(cell).role, None, "{cell}");
@@ -345,6 +389,14 @@ mod tests {
             "energy uncertainty",
             "temperature",
             "normalised intensity",
+            "-E_B (eV)",
+            "- binding energy",
+            "−I (arb. u.)",
+            "√counts",
+            "counts %",
+            "error %",
+            "dI/dE",
+            "log(counts)",
         ] {
             assert_eq!(spectrum(cell).role, None, "{cell}");
         }
@@ -366,6 +418,7 @@ mod tests {
             ("E - E_F (eV)", Some(FinalState), fermi),
             ("E-EF", Some(FinalState), fermi),
             ("E−E_F / eV", Some(FinalState), fermi),
+            ("(E − E_F)/eV", Some(FinalState), fermi),
             (
                 "E − E_VBM (eV)",
                 Some(FinalState),
@@ -383,6 +436,13 @@ mod tests {
             ("photon energy (eV)", Some(Photon), None),
             ("wavelength (nm)", Some(Photon), None),
             ("Energy (eV)", None, None),
+            ("Energy (eV, below E_F)", Some(Binding), fermi),
+            // Upwards and downwards at once.
+            ("Binding energy (eV, above E_F)", None, fermi),
+            ("Binding energy above E_F (eV)", None, fermi),
+            ("E_B - E_F (eV)", None, fermi),
+            ("Kinetic energy below E_F (eV)", None, fermi),
+            ("\u{feff}KE\u{200b} (eV)", Some(Kinetic), None),
         ] {
             let reading = spectrum(cell);
             assert_eq!(
@@ -454,6 +514,7 @@ mod tests {
             assert_eq!(levels(cell).units, units, "{cell}");
         }
         assert_eq!(spectrum("Intensity / counts/s").units, ["counts/s"]);
+        assert_eq!(spectrum("error (%)").units, ["%"]);
         assert_eq!(spectrum("intensity_cps").units, ["cps"]);
     }
 }

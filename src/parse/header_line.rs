@@ -2,7 +2,7 @@
 
 use std::ops::Range;
 
-use super::dialect::{self, Cell, Delimiter};
+use super::dialect::{self, Delimiter, Splitter};
 use super::header::{self, Reading};
 use super::layout::Layout;
 use super::metadata;
@@ -46,20 +46,14 @@ pub(super) fn find(
     hints: &Hints,
 ) -> Result<Option<Vec<Name>>, Problem> {
     if let Some(line) = layout.bare.last() {
-        let cells = cells(source, layout, line.clone(), kind)
-            .map_err(|why| why.problem(source, layout, line))?;
-        let names = names(source, &cells, kind);
-        return match names.iter().find(|name| number(&name.text).is_some()) {
-            Some(name) => Err(neither(source, name)),
-            None => Ok(Some(names)),
-        };
+        return bare_header(source, layout, line, kind, hints).map(Some);
     }
     let Some(line) = comment_header(source, layout) else {
         return Ok(None);
     };
     match cells(source, layout, line.clone(), kind) {
         Ok(cells) => {
-            let names = names(source, &cells, kind);
+            let names = names(cells, kind);
             Ok(holds_names(&names, kind, hints).then_some(names))
         }
         Err(Mismatch::Ambiguous(ways)) => {
@@ -67,6 +61,49 @@ pub(super) fn find(
         }
         Err(_) => Ok(None),
     }
+}
+
+/// The names in the last line before the numbers that is no comment.
+fn bare_header(
+    source: &Source,
+    layout: &Layout,
+    line: &Range<usize>,
+    kind: Kind,
+    hints: &Hints,
+) -> Result<Vec<Name>, Problem> {
+    let names = cells(source, layout, line.clone(), kind).map(|cells| names(cells, kind));
+    let own = names.as_deref().unwrap_or_default();
+    let above = layout.bare.iter().rev().skip(1).cloned();
+    let above = above.chain(comment_header(source, layout));
+    let other = naming(source, layout, above, kind).find(|(_, names)| known(names) > known(own));
+    if let (Some((other, _)), false) = (other, chosen(own, hints)) {
+        return Err(between(source, line, other));
+    }
+    if !source.slice(line.clone()).contains(char::is_alphabetic) {
+        return Err(neither(source, line.clone(), "it has no letter"));
+    }
+    let names = names.map_err(|why| why.problem(source, layout, line))?;
+    let of_number = names.iter().find(|name| number(&name.text).is_some());
+    match of_number.and_then(|name| Some((name, name.span.clone()?))) {
+        Some((name, span)) => {
+            let why = format!("`{}` is a number among names", name.text);
+            Err(neither(source, span, &why))
+        }
+        None => Ok(names),
+    }
+}
+
+/// Those of some lines that name the columns, two of them at least in the trade's words.
+pub(super) fn naming<'a>(
+    source: &'a Source,
+    layout: &'a Layout,
+    lines: impl Iterator<Item = Range<usize>> + 'a,
+    kind: Kind,
+) -> impl Iterator<Item = (Range<usize>, Vec<Name>)> + 'a {
+    lines.filter_map(move |line| {
+        let names = names(cells(source, layout, line.clone(), kind).ok()?, kind);
+        (known(&names) > 1).then_some((line, names))
+    })
 }
 
 /// The last comment before the numbers that has letters and is no statement such as `axis: kinetic`.
@@ -90,26 +127,33 @@ pub(super) fn comment_header(source: &Source, layout: &Layout) -> Option<Range<u
 }
 
 fn holds_names(names: &[Name], kind: Kind, hints: &Hints) -> bool {
-    let chosen = |name: &Name| {
-        hints
-            .columns
-            .values()
-            .any(|choice| matches!(choice, ColumnChoice::Header(text) if *text == name.text))
-    };
-    let known = |name: &Name| kind == Kind::Any || name.reading.role.is_some() || chosen(name);
-    names.iter().any(known) && !names.iter().any(|name| number(&name.text).is_some())
+    let is_name = kind == Kind::Any || known(names) > 0 || chosen(names, hints);
+    is_name && !names.iter().any(|name| number(&name.text).is_some())
 }
 
-fn names(source: &Source, cells: &[Cell], kind: Kind) -> Vec<Name> {
+/// How many of the names say what they are.
+fn known(names: &[Name]) -> usize {
+    let roles = names.iter().filter(|name| name.reading.role.is_some());
+    roles.count()
+}
+
+/// Whether the user names a column by one of the names.
+fn chosen(names: &[Name], hints: &Hints) -> bool {
+    hints.columns.values().any(|choice| {
+        matches!(choice, ColumnChoice::Header(text) if names.iter().any(|name| *text == name.text))
+    })
+}
+
+/// One cell: its text and where it stands.
+type Cell = (String, Range<usize>);
+
+fn names(cells: Vec<Cell>, kind: Kind) -> Vec<Name> {
     cells
-        .iter()
-        .map(|cell| {
-            let text = cell.text(source).into_owned();
-            Name {
-                reading: header::read(&text, kind),
-                text,
-                span: Some(cell.span.clone()),
-            }
+        .into_iter()
+        .map(|(text, span)| Name {
+            reading: header::read(&text, kind),
+            text,
+            span: Some(span),
         })
         .collect()
 }
@@ -152,31 +196,23 @@ fn cells(
     line: Range<usize>,
     kind: Kind,
 ) -> Result<Vec<Cell>, Mismatch> {
-    let text = source.slice(line.clone());
-    let mut cells = Vec::new();
     if layout.delimiter != Delimiter::Blanks {
-        dialect::split(text, line.start, layout.delimiter, &mut cells).map_err(Mismatch::Quotes)?;
-        return match cells.len() {
-            found if found == layout.fields => Ok(cells),
-            found => Err(Mismatch::Count(found)),
-        };
+        return delimited(source, &line, layout.delimiter, layout.fields);
     }
     for delimiter in Delimiter::CHARACTERS {
-        let split = dialect::split(text, line.start, delimiter, &mut cells);
-        let whole = |cell: &Cell| regroup::is_closed(source.slice(cell.span.clone()));
-        if split.is_ok()
-            && cells.len() > 1
-            && cells.len() == layout.fields
-            && cells.iter().all(whole)
+        if layout.fields > 1
+            && let Ok(cells) = delimited(source, &line, delimiter, layout.fields)
+            && cells.iter().all(|(text, _)| regroup::is_closed(text))
         {
             return Ok(cells);
         }
     }
+    let text = source.slice(line.clone());
     regroup::regroup(text, layout.fields, kind)
         .map(|spans| {
-            let cell = |span: Range<usize>| Cell {
-                span: line.start + span.start..line.start + span.end,
-                quoted: false,
+            let cell = |span: Range<usize>| {
+                let place = line.start + span.start..line.start + span.end;
+                (text[span].to_owned(), place)
             };
             spans.into_iter().map(cell).collect()
         })
@@ -191,14 +227,38 @@ fn cells(
         })
 }
 
-fn neither(source: &Source, name: &Name) -> Problem {
-    let problem = Problem::new(format!(
-        "the line before the numbers is neither a header nor a row: `{}` is a number among names",
-        name.text
-    ))
-    .with_help("a header holds names only; mark a comment with #");
-    match &name.span {
-        Some(span) => problem.at(source.place(span.clone())),
-        None => problem,
+/// The cells of a line with a delimiter of one character.
+fn delimited(
+    source: &Source,
+    line: &Range<usize>,
+    delimiter: Delimiter,
+    fields: usize,
+) -> Result<Vec<Cell>, Mismatch> {
+    let spans = dialect::spans(source.slice(line.clone()), line.start, delimiter)
+        .map_err(Mismatch::Quotes)?;
+    if spans.len() != fields {
+        return Err(Mismatch::Count(spans.len()));
     }
+    let mut splitter = Splitter::new(source, delimiter);
+    let cells = splitter.cells(line).map_err(Mismatch::Quotes)?;
+    let texts = cells.iter().map(|text| text.trim().to_owned());
+    Ok(texts.zip(spans).collect())
+}
+
+fn neither(source: &Source, span: Range<usize>, why: &str) -> Problem {
+    Problem::new(format!(
+        "the line before the numbers is neither a header nor a row: {why}"
+    ))
+    .at(source.place(span))
+    .with_help("a header holds names only; mark a comment with #")
+}
+
+fn between(source: &Source, line: &Range<usize>, names: Range<usize>) -> Problem {
+    Problem::new("this line between the names and the numbers is neither")
+        .at(source.place(line.clone()))
+        .with_related(source.place(names), "the names of the columns")
+        .with_help(
+            "write a unit beside its name, as in `Kinetic energy (eV)`; mend a damaged row; \
+             mark a comment with #",
+        )
 }

@@ -27,7 +27,7 @@ pub fn read_levels(source: Source, hints: &Hints) -> Result<Parsed<Levels>, Vec<
                 .units
                 .iter()
                 .map(|(role, unit)| (*role, unit_note(unit)));
-            let columns = columns(&source, &table, hints, &notes.collect());
+            let columns = columns(&table, hints, &notes.collect());
             document.provenance = provenance(&source, &table, &columns);
             if let Some(zero) = meaning.reference {
                 document.reference = zero.value;

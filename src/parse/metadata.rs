@@ -7,7 +7,7 @@ use super::evidence::Evidence;
 use super::header;
 use super::problem::Problems;
 use super::role::Kind;
-use super::words;
+use super::words::{self, Relation};
 use super::{Place, Problem, Source};
 use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit, Reference};
 
@@ -39,6 +39,9 @@ pub(super) struct Metadata {
     pub references: Vec<Evidence<Reference>>,
 }
 
+/// Pieces of a line beyond which it is no list of statements.
+const MOST_PIECES: usize = 50;
+
 /// Reads the comments of a table of `kind`; what is known but unreadable becomes a problem.
 pub(super) fn read(
     source: &Source,
@@ -51,7 +54,9 @@ pub(super) fn read(
         let text = source.slice(comment.clone());
         let parts = statements(text);
         if parts.is_empty() {
-            metadata.sentence(text, &source.place(comment));
+            if let Err(problem) = metadata.sentence(text, &source.place(comment), kind) {
+                problems.push(problem);
+            }
             continue;
         }
         for (key, value) in parts {
@@ -84,6 +89,9 @@ fn statements(text: &str) -> Vec<(Range<usize>, Range<usize>)> {
     }
     pieces.push(start..text.len());
     let pairs: Vec<_> = pieces.into_iter().map(|piece| pair(text, piece)).collect();
+    if pairs.len() > MOST_PIECES {
+        return Vec::new();
+    }
     if pairs.len() > 1 && pairs.iter().all(Option::is_some) {
         return pairs.into_iter().flatten().collect();
     }
@@ -198,15 +206,13 @@ impl Metadata {
     }
 
     /// A sentence such as `All energies are in eV relative to the Fermi level`.
-    fn sentence(&mut self, text: &str, place: &Place) {
+    fn sentence(&mut self, text: &str, place: &Place, kind: Kind) -> Result<(), Problem> {
         let text = text.trim_end_matches('.');
         let Some((about, rest)) = subject(text) else {
-            return;
+            return Ok(());
         };
-        let (rest, zero) = match words::relation(rest) {
-            Some((before, _, zero)) => (before, Some(zero)),
-            None => (rest, None),
-        };
+        let relation = words::relation(rest);
+        let rest = relation.map_or(rest, |(before, ..)| before);
         let unit = rest.trim().strip_prefix("in ").map(str::trim);
         if let Some(unit) = unit {
             match about {
@@ -215,10 +221,27 @@ impl Metadata {
             };
         }
         let only_zero = unit.is_some() || rest.trim().is_empty();
-        if let (Some(zero), true, UnitOf::Energy) = (zero, only_zero, about) {
-            self.references
-                .push(Evidence::at(zero, Self::says(place), place.clone()));
-        }
+        let (Some((_, direction, zero)), true, UnitOf::Energy) = (relation, only_zero, about)
+        else {
+            return Ok(());
+        };
+        let axis = match direction {
+            Relation::Below if kind == Kind::Levels => {
+                return Err(Problem::new("this comment counts the energies downwards")
+                    .at(place.clone())
+                    .with_help(
+                        "levels are counted upwards: turn their signs, and write `relative to`",
+                    ));
+            }
+            Relation::Below => Some(AxisKind::Binding),
+            Relation::Above => Some(AxisKind::FinalState),
+            Relation::From => None,
+        };
+        let evidence = |axis| Evidence::at(axis, Self::says(place), place.clone());
+        self.axes.extend(axis.map(evidence));
+        self.references
+            .push(Evidence::at(zero, Self::says(place), place.clone()));
+        Ok(())
     }
 }
 
@@ -324,6 +347,13 @@ mod tests {
             );
             assert_eq!(metadata.references.first().map(|e| e.value), zero, "{text}");
         }
+        let (metadata, _) = of("energies in eV below E_F", Kind::Spectrum);
+        assert_eq!(metadata.axes[0].value, AxisKind::Binding);
+        let (_, problems) = of("energies in eV below E_F", Kind::Levels);
+        assert_eq!(
+            problems[0].message,
+            "this comment counts the energies downwards"
+        );
         let (metadata, _) = of("units: eV, counts/s", Kind::Spectrum);
         assert_eq!(
             metadata.intensity_units[0].value,

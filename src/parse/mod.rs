@@ -32,6 +32,8 @@ mod unit_of_column;
 mod words;
 
 #[cfg(test)]
+mod nasty_tests;
+#[cfg(test)]
 mod tests;
 
 pub use condition::ConditionKey;

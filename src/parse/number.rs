@@ -1,16 +1,18 @@
 //! The text of one number.
 
 /// Reads a number: the grammar of Rust's `f64` (`nan` and `inf` included), and the Fortran exponent
-/// letter `D`. `None` where the text is anything else.
+/// letter `D`. `None` where the text is anything else, or digits beyond the largest number.
 pub(super) fn number(text: &str) -> Option<f64> {
+    let within = |value: &f64| value.is_finite() || !text.contains(|c: char| c.is_ascii_digit());
     if let Ok(value) = text.parse() {
-        return Some(value);
+        return Some(value).filter(within);
     }
     let (mantissa, exponent) = text.split_once(['d', 'D'])?;
     if !mantissa.ends_with(|c: char| c.is_ascii_digit() || c == '.') {
         return None;
     }
-    format!("{mantissa}e{exponent}").parse().ok()
+    let value = format!("{mantissa}e{exponent}").parse().ok();
+    value.filter(within)
 }
 
 /// Whether the text is a number with a comma for its decimal mark.
@@ -43,7 +45,8 @@ mod tests {
         }
         assert!(number("NaN").unwrap().is_nan());
         for text in [
-            "", "D5", "1D", "1,5", "0x1", "1.0 2.0", "*****", "nand", "infD2", "1_000",
+            "", "D5", "1D", "1,5", "0x1", "1.0 2.0", "*****", "nand", "infD2", "1_000", "1e400",
+            "-1D999", "−1", "--", "1.0+001", "1'234", "10(1)", "5%",
         ] {
             assert_eq!(number(text), None, "{text}");
         }

@@ -90,8 +90,7 @@ impl<T> Parsed<T> {
 
 impl<T> Locate for Parsed<T> {
     fn locate(&self, row: usize, field: usize) -> Option<Range<usize>> {
-        let cell = self.layout.cell(&self.source, row, field)?;
-        Some(cell.span)
+        self.layout.cell(&self.source, row, field)
     }
 
     fn locate_header(&self, field: usize) -> Option<Range<usize>> {
@@ -108,12 +107,7 @@ pub(super) fn unit_note<U: std::fmt::Display>(unit: &Evidence<U>) -> (String, St
 }
 
 /// Every column with its role, unit and evidence.
-pub(super) fn columns(
-    source: &Source,
-    table: &Table,
-    hints: &Hints,
-    units: &UnitNotes,
-) -> Vec<Column> {
+pub(super) fn columns(table: &Table, hints: &Hints, units: &UnitNotes) -> Vec<Column> {
     table
         .names
         .iter()
@@ -127,14 +121,13 @@ pub(super) fn columns(
                 index,
                 role,
                 unit: unit.map(|(unit, _)| unit.clone()),
-                evidence: evidence(source, table, hints, index, role, unit),
+                evidence: evidence(table, hints, index, role, unit),
             }
         })
         .collect()
 }
 
 fn evidence(
-    source: &Source,
     table: &Table,
     hints: &Hints,
     index: usize,
@@ -144,7 +137,7 @@ fn evidence(
     let chosen = role.filter(|role| hints.columns.contains_key(role));
     let says = match chosen {
         Some(role) => hints.says(&format!("column.{role}")),
-        None => table.says(source, index),
+        None => table.says(index),
     };
     match unit {
         Some((unit, by)) if *by != says => format!("{says}; {unit} by {by}"),
@@ -156,9 +149,8 @@ fn evidence(
 pub(super) fn provenance(source: &Source, table: &Table, columns: &[Column]) -> Provenance {
     let mut provenance = Provenance::default();
     provenance.sources.push(source.record().clone());
-    let header = table.names.iter().find_map(|name| name.span.clone());
-    let header = match header {
-        Some(span) => format!("names on line {}", source.place(span).line),
+    let header = match table.line {
+        Some(line) => format!("names on line {line}"),
         None => "no names".to_owned(),
     };
     provenance.step(

@@ -9,6 +9,26 @@ use super::Place;
 /// How many problems one reading reports in full.
 const SHOWN: usize = 20;
 
+/// Characters of the file's text that a message repeats.
+const REPEATED: usize = 80;
+
+/// A text of the file as a message repeats it: cut where it is long, its unseen characters by number.
+pub(super) fn visible(text: &str) -> String {
+    let unseen =
+        |c: char| c.is_control() || matches!(c, '\u{ad}' | '\u{200b}'..='\u{200f}' | '\u{feff}');
+    let mut shown = String::new();
+    for c in text.chars().take(REPEATED) {
+        match c {
+            c if unseen(c) => shown.extend(c.escape_unicode()),
+            c => shown.push(c),
+        }
+    }
+    if text.chars().nth(REPEATED).is_some() {
+        shown.push('…');
+    }
+    shown
+}
+
 /// One reason why a text could not be read.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Problem {
@@ -223,6 +243,12 @@ mod tests {
       a.csv:1:9: the column
       help: write a number
     ");
+    }
+
+    #[test]
+    fn repeated_text_is_short_and_shows_what_cannot_be_seen() {
+        assert_eq!(visible("5\0 µ\u{feff}"), r"5\u{0} µ\u{feff}");
+        assert_eq!(visible(&"x".repeat(5_000_000)).chars().count(), 81);
     }
 
     #[test]

@@ -17,7 +17,7 @@ pub(super) fn reference(
     for &field in fields {
         if let Some(zero) = table.names[field].reading.reference {
             let place = table.place_of(source, field);
-            evidence.push(Evidence::at(zero, table.says(source, field), place));
+            evidence.push(Evidence::at(zero, table.says(field), place));
         }
     }
     evidence.extend(table.metadata.references.iter().cloned());

@@ -207,15 +207,15 @@ fn not_utf8(shown: &str, record: SourceRecord, error: &std::string::FromUtf8Erro
         .with_help(help)
 }
 
-/// The lines of a text from a byte that starts one; a byte order mark belongs to none.
+/// The lines of a text from a byte that starts one; a byte order mark before one, as where files were
+/// joined, belongs to none.
 fn lines(text: &str, start: usize) -> impl Iterator<Item = Line> + '_ {
     let bytes = text.as_bytes();
-    let mut at = if start == 0 && text.starts_with(BOM) {
-        BOM.len_utf8()
-    } else {
-        start
-    };
+    let mut at = start;
     std::iter::from_fn(move || {
+        while text.get(at..).is_some_and(|rest| rest.starts_with(BOM)) {
+            at += BOM.len_utf8();
+        }
         let rest = bytes.get(at..).filter(|rest| !rest.is_empty())?;
         let length = rest
             .iter()
@@ -293,6 +293,7 @@ mod tests {
             ("a\rbb X", 2, 4),
             ("\u{feff}X", 1, 1),
             ("\u{feff}a\n\tX", 2, 2),
+            ("a\n\u{feff}X", 2, 1),
             ("µ−世 X", 1, 5),
             ("\n\n\r\n\rX", 5, 1),
         ] {

@@ -21,7 +21,7 @@ pub fn read_spectrum(source: Source, hints: &Hints) -> Result<Parsed<Spectrum>, 
     let read = read(&source, hints, &mut problems);
     match (read, problems.is_empty()) {
         (Some((meaning, table, [energy, intensity, uncertainty])), true) => {
-            let columns = columns(&source, &table, hints, &meaning.notes());
+            let columns = columns(&table, hints, &meaning.notes());
             let mut record = provenance(&source, &table, &columns);
             meaning.record(&mut record);
             let document = Spectrum {
@@ -146,7 +146,7 @@ fn axis(
     field: usize,
     hints: &Hints,
 ) -> Result<Evidence<AxisKind>, Problem> {
-    let (says, place) = (table.says(source, field), table.place_of(source, field));
+    let (says, place) = (table.says(field), table.place_of(source, field));
     let mut evidence = Vec::new();
     let header = table.names[field].reading.axis;
     evidence.extend(header.map(|axis| Evidence::at(axis, says, place.clone())));

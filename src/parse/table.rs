@@ -3,12 +3,12 @@
 use std::collections::BTreeMap;
 use std::ops::Range;
 
-use super::dialect::{self, Cell, Delimiter};
+use super::dialect::{Delimiter, Splitter};
 use super::header_line::{self, Name};
 use super::layout::Layout;
 use super::metadata::{self, Metadata};
 use super::number::{has_decimal_comma, number};
-use super::problem::Problems;
+use super::problem::{Problems, visible};
 use super::role::{ColumnChoice, Hints, Kind, Role};
 use super::{Place, Problem, Source};
 
@@ -20,6 +20,8 @@ const LISTED: usize = 20;
 pub(super) struct Table {
     pub layout: Layout,
     pub names: Vec<Name>,
+    /// The line of the names.
+    pub line: Option<usize>,
     pub metadata: Metadata,
     pub fields: BTreeMap<Role, usize>,
 }
@@ -52,9 +54,14 @@ impl Table {
         );
         comments.sort_by_key(|line| line.start);
         let metadata = metadata::read(source, comments.into_iter(), kind, problems);
+        if let Some(problem) = second_header(source, &layout, &names, kind) {
+            problems.push(problem);
+        }
+        let line = header.map(|span| source.place(span).line);
         let mut table = Self {
             layout,
             names,
+            line,
             metadata,
             fields: BTreeMap::new(),
         };
@@ -180,7 +187,7 @@ impl Table {
             .iter()
             .take(LISTED)
             .enumerate()
-            .map(|(field, name)| format!("{} `{}`", field + 1, name.text))
+            .map(|(field, name)| format!("{} `{}`", field + 1, visible(&name.text)))
             .chain((self.names.len() > LISTED).then(|| "…".to_owned()))
             .collect();
         let message = format!("{}; the columns are {}", problem.message, list.join(", "));
@@ -189,7 +196,7 @@ impl Table {
 
     /// The place of a column: its header cell, or its first value where it has none.
     pub fn place_of(&self, source: &Source, field: usize) -> Place {
-        let first = || self.layout.cell(source, 0, field).map(|cell| cell.span);
+        let first = || self.layout.cell(source, 0, field);
         source.place(
             self.names[field]
                 .span
@@ -200,13 +207,12 @@ impl Table {
     }
 
     /// A column's header cell as evidence.
-    pub fn says(&self, source: &Source, field: usize) -> String {
-        let name = &self.names[field];
-        match &name.span {
-            Some(span) => {
-                let line = source.place(span.clone()).line;
-                format!("the header cell `{}` on line {line}", name.text)
-            }
+    pub fn says(&self, field: usize) -> String {
+        match self.line {
+            Some(line) => format!(
+                "the header cell `{}` on line {line}",
+                self.names[field].text
+            ),
             None => format!("column {}", field + 1),
         }
     }
@@ -246,6 +252,22 @@ fn numbered(kind: Kind, hints: &Hints) -> bool {
     }
 }
 
+/// A comment among the rows that gives the columns other names: another table begins there.
+fn second_header(source: &Source, layout: &Layout, names: &[Name], kind: Kind) -> Option<Problem> {
+    let comments = layout.comments[layout.comments_before..].iter().cloned();
+    let differs = |other: &[Name]| {
+        let mut pairs = names.iter().zip(other);
+        pairs.any(|(one, other)| one.reading != other.reading)
+    };
+    let (line, _) =
+        header_line::naming(source, layout, comments, kind).find(|(_, other)| differs(other))?;
+    Some(
+        Problem::new("this comment among the rows gives the columns other names")
+            .at(source.place(line))
+            .with_help("keep one table in a file"),
+    )
+}
+
 fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Problem {
     let first = layout.row(source, 0).unwrap_or(0..0);
     let (example, settings) = match kind {
@@ -271,14 +293,21 @@ fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Pro
     ))
     .at(source.place(first))
     .with_help(help);
-    match header_line::comment_header(source, layout) {
-        Some(line) => problem.with_related(
-            source.place(line),
+    let rows = layout.rows(source).take(NEAR_ROWS);
+    let below = header_line::naming(source, layout, rows, kind).next();
+    let (line, label) = match (header_line::comment_header(source, layout), below) {
+        (_, Some((line, _))) => (line, "these are names, but the lines above are no comments"),
+        (Some(line), _) => (
+            line,
             "this comment does not have one known name for each column",
         ),
-        None => problem,
-    }
+        _ => return problem,
+    };
+    problem.with_related(source.place(line), label)
 }
+
+/// Rows in which names are looked for where there are none before the numbers.
+const NEAR_ROWS: usize = 100;
 
 /// What the cells of a column hold.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -303,22 +332,28 @@ pub(super) fn values(
         .iter()
         .map(|_| Vec::with_capacity(layout.rows))
         .collect();
-    let mut cells = Vec::with_capacity(layout.fields);
+    let mut splitter = Splitter::new(source, layout.delimiter);
     for row in layout.rows(source) {
-        let text = source.slice(row.clone());
-        if let Err((span, what)) = dialect::split(text, row.start, layout.delimiter, &mut cells) {
-            problems.push_with(|| Problem::new(what).at(source.place(span)));
-            continue;
-        }
-        if cells.len() != layout.fields {
-            problems.push_with(|| ragged(source, layout, &row, &cells));
-            continue;
-        }
+        let cells = match splitter.cells(&row) {
+            Ok(cells) if cells.len() == layout.fields => cells,
+            Ok(cells) => {
+                problems.push_with(|| ragged(source, layout, &row, cells.len()));
+                continue;
+            }
+            Err((span, what)) => {
+                problems.push_with(|| Problem::new(what).at(source.place(span)));
+                continue;
+            }
+        };
         for (&(field, content), column) in wanted.iter().zip(&mut columns) {
-            let cell = &cells[field];
-            match read(&cell.text(source), content) {
+            let text = cells.get(field).unwrap_or_default().trim();
+            match read(text, content) {
                 Some(value) => column.push(value),
-                None => problems.push_with(|| unreadable(source, cell, content, &names[field])),
+                None => problems.push_with(|| {
+                    let span = layout.spans(source, &row).into_iter().nth(field);
+                    unreadable(text, content, &names[field])
+                        .at(source.place(span.unwrap_or(row.clone())))
+                }),
             }
         }
     }
@@ -347,27 +382,27 @@ fn read(text: &str, content: Content) -> Option<f64> {
     }
 }
 
-fn ragged(source: &Source, layout: &Layout, row: &Range<usize>, cells: &[Cell]) -> Problem {
-    let span = cells
-        .get(layout.fields)
-        .map_or(row.end..row.end, |cell| cell.span.clone());
+fn ragged(source: &Source, layout: &Layout, row: &Range<usize>, found: usize) -> Problem {
+    let surplus = layout.spans(source, row).into_iter().nth(layout.fields);
+    let span = surplus.unwrap_or(row.end..row.end);
     let help = match layout.delimiter {
-        Delimiter::Comma => "if commas are decimal marks here, write points",
-        Delimiter::Blanks => "a blank cell needs another delimiter, such as a comma",
-        _ => "give every row the same number of fields",
+        Delimiter::Comma if found > layout.fields => {
+            "if commas are decimal marks here, write points"
+        }
+        Delimiter::Blanks if found > 1 => "a blank cell needs another delimiter, such as a comma",
+        _ => "give every row the same number of fields; a remark begins with #",
     };
     Problem::new(format!(
         "expected {} fields {}, as in most rows, and found {}",
         layout.fields,
         layout.delimiter.in_words(),
-        cells.len()
+        found
     ))
     .at(source.place(span))
     .with_help(help)
 }
 
-fn unreadable(source: &Source, cell: &Cell, content: Content, name: &Name) -> Problem {
-    let text = cell.text(source);
+fn unreadable(text: &str, content: Content, name: &Name) -> Problem {
     let expected = match content {
         Content::Number => "a number",
         Content::Integer => "a whole number",
@@ -380,15 +415,30 @@ fn unreadable(source: &Source, cell: &Cell, content: Content, name: &Name) -> Pr
     let found = if text.is_empty() {
         "a blank cell".to_owned()
     } else {
-        format!("`{text}`")
+        format!("`{}`", visible(text))
     };
-    let problem = Problem::new(format!("expected {expected}{column} and found {found}"))
-        .at(source.place(cell.span.clone()));
-    if has_decimal_comma(&text) {
-        problem.with_help("decimal commas are not read: write points in the whole file")
-    } else if !text.is_empty() && text.bytes().all(|byte| byte == b'*') {
-        problem.with_help("the program that wrote the file had no room for this number")
-    } else {
-        problem
+    let problem = Problem::new(format!("expected {expected}{column} and found {found}"));
+    match advice(text) {
+        Some(help) => problem.with_help(help),
+        None => problem,
     }
+}
+
+/// What to do about a text that is no number, where its form tells.
+fn advice(text: &str) -> Option<&'static str> {
+    let digit = |c: char| c.is_ascii_digit();
+    Some(if has_decimal_comma(text) {
+        "decimal commas and separators of thousands are not read: write a point where the fraction \
+         begins and nothing elsewhere, in the whole file"
+    } else if !text.is_empty() && text.bytes().all(|byte| byte == b'*') {
+        "the program that wrote the file had no room for this number"
+    } else if !text.is_empty() && text.bytes().all(|byte| byte == b'-') {
+        "where a value is missing, write `nan`"
+    } else if text.contains(['−', '–']) && text.contains(digit) {
+        "this minus is a typographic sign: write the plain `-`"
+    } else if text.contains(digit) && text.parse().is_ok_and(f64::is_infinite) {
+        "it is beyond the largest number, about 1.8e308"
+    } else {
+        return None;
+    })
 }

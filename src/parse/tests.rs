@@ -195,7 +195,7 @@ fn refusals_of_levels() {
     ");
     insta::assert_snapshot!(refused("k;E_QP (eV)\n1;-5,5\n", &hints()), @r"
     levels.csv:2:3: expected a number in column `E_QP (eV)` and found `-5,5`
-      help: decimal commas are not read: write points in the whole file
+      help: decimal commas and separators of thousands are not read: write a point where the fraction begins and nothing elsewhere, in the whole file
     ");
     insta::assert_snapshot!(refused("k,E_QP (eV)\n1,-5.5\n2,-5,5\n3,-5.5\n", &hints()), @r"
     levels.csv:3:6: expected 2 fields separated by commas, as in most rows, and found 3

@@ -79,7 +79,7 @@ impl Units<'_> {
         comments: Vec<Evidence<T>>,
     ) -> Result<Option<Evidence<T>>, Problem> {
         let (says, place) = (
-            self.table.says(self.source, field),
+            self.table.says(field),
             self.table.place_of(self.source, field),
         );
         let mut evidence = Vec::new();
@@ -122,7 +122,7 @@ impl Units<'_> {
         let role = self.table.fields.iter().find(|&(_, &other)| other == field);
         Problem::new(format!(
             "`{text}` in {} is not the spelling of a unit for it",
-            self.table.says(self.source, field)
+            self.table.says(field)
         ))
         .at(self.table.place_of(self.source, field))
         .with_help(format!(

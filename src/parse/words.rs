@@ -118,7 +118,9 @@ fn levels_tag(word: &str) -> Option<Tag> {
         "eig" | "eigs" | "eigval" | "eigenvalue" | "eigenvalues" | "eigenenergy" => Tag::Energy,
         "ks" | "dft" | "hf" | "mf" | "lda" | "gga" | "pbe" | "pbe0" | "hse" | "hse06"
         | "hybrid" | "meanfield" => Tag::MeanField,
-        "qp" | "gw" | "g0w0" | "evgw" | "qsgw" | "scgw" | "quasiparticle" => Tag::Quasiparticle,
+        "qp" | "gw" | "g0w0" | "gw0" | "evgw" | "evgw0" | "qsgw" | "scgw" | "quasiparticle" => {
+            Tag::Quasiparticle
+        }
         "f" | "occ" | "occs" | "occupation" | "occupations" | "occupancy" => Tag::Occupation,
         "w" | "wk" | "wt" | "wtk" | "weight" | "weights" => Tag::Weight,
         "k" | "ik" | "kpt" | "kpts" | "ikpt" | "kpoint" | "kindex" => Tag::K,

@@ -1,0 +1,249 @@
+//! Tables that invite a misreading: each is read as it says, or refused with words to act on.
+
+use std::time::{Duration, Instant};
+
+use super::*;
+use crate::quantity::{AxisKind, Reference};
+
+fn problems(text: &str, levels: bool) -> Vec<Problem> {
+    let (source, hints) = (Source::from_text("t", text), Hints::default());
+    if levels {
+        read_levels(source, &hints).err()
+    } else {
+        read_spectrum(source, &hints).err()
+    }
+    .unwrap_or_default()
+}
+
+/// Where the first problem stands, and what it and its advice must say.
+fn refused(levels: bool, cases: &[(&str, &str, &str)]) {
+    for (text, place, says) in cases {
+        let problems = problems(text, levels);
+        let first = problems.first().map(ToString::to_string);
+        let first = first.unwrap_or_else(|| panic!("read: {text:?}"));
+        assert!(first.starts_with(&format!("t:{place}: ")), "{first}");
+        assert!(first.contains(says), "{text:?}\n{first}");
+    }
+}
+
+#[test]
+fn curves_are_refused_where_they_invite_a_misreading() {
+    refused(
+        false,
+        &[
+            // Numbers.
+            (
+                "KE (eV);counts\n1.0;1,234\n",
+                "2:5",
+                "separators of thousands",
+            ),
+            ("KE (eV);counts\n1.0;1'234\n", "2:5", "found `1'234`"),
+            (
+                "KE (eV),counts\n1,1e400\n",
+                "2:3",
+                "beyond the largest number",
+            ),
+            ("KE (eV),counts\n0x10,2\n", "2:1", "found `0x10`"),
+            ("KE (eV),counts\n1_000,2\n", "2:1", "found `1_000`"),
+            ("KE (eV),counts\n1,--\n", "2:3", "write `nan`"),
+            ("KE (eV),counts\n1,****\n", "2:3", "no room"),
+            ("KE (eV),counts\n−1,2\n", "2:1", "write the plain `-`"),
+            ("KE (eV),counts\n1,5\0\n", "2:3", r"found `5\u{0}`"),
+            // Rows.
+            (
+                "KE (eV),counts\n1,2\n3,4\nend\n",
+                "4:4",
+                "a remark begins with #",
+            ),
+            (
+                "KE (eV),counts,c\n1,2,\"a\n#b\"\n3,4,5\n",
+                "2:5",
+                "does not end on its line",
+            ),
+            ("KE (eV),counts\n1, \"2\"\n", "2:4", "blanks stand before"),
+            (
+                "KE (eV) counts\n**** ****\n3 4\n",
+                "2:1",
+                "between the names and the numbers",
+            ),
+            (
+                "# KE (eV) counts\n−3 −4\n3 4\n",
+                "2:1",
+                "between the names and the numbers",
+            ),
+            (
+                "KE (eV),counts\n,,\n3,4,\n",
+                "2:1",
+                "neither a header nor a row",
+            ),
+            ("**** ****\n3 4\n", "1:1", "it has no letter"),
+            (
+                "KE,counts\neV,1/s\n1,2\n",
+                "2:1",
+                "write a unit beside its name",
+            ),
+            (
+                "Scan 12\nKE (eV),counts\n1,2\n",
+                "1:1",
+                "2:1: these are names",
+            ),
+            (
+                "#KE (eV) counts\n1 2\n#BE (eV) counts\n2 3\n",
+                "3:2",
+                "one table in a file",
+            ),
+            // Names.
+            ("-E_B (eV),counts\n1,2\n", "1:1", "hold energies"),
+            ("E_B - E_F (eV),counts\n1,2\n", "1:1", "counted along"),
+            (
+                "Binding energy above E_F (eV),counts\n1,2\n",
+                "1:1",
+                "counted along",
+            ),
+            ("KE (eV),√counts\n1,2\n", "1:1", "hold intensities"),
+            ("KE (eV),-counts\n1,2\n", "1:1", "hold intensities"),
+            ("KE (eV),counts,error (%)\n1,2,3\n", "1:16", "`%`"),
+            ("KE (eV),counts (x1000)\n1,2\n", "1:9", "`x1000`"),
+            (
+                "# energies below E_F\nKE (eV),counts\n1,2\n",
+                "2:1",
+                "as binding by the comment",
+            ),
+        ],
+    );
+}
+
+#[test]
+fn levels_are_refused_where_they_invite_a_misreading() {
+    refused(
+        true,
+        &[
+            ("n,-E_QP (eV)\n1,5\n", "1:1", "hold energies"),
+            ("n,∆E_QP (eV)\n1,5\n", "1:1", "hold energies"),
+            ("n,E - E_KS (eV)\n1,5\n", "1:1", "hold energies"),
+            ("n,|E_QP| (eV)\n1,5\n", "1:1", "hold energies"),
+            (
+                "n,E_QP up (eV),E_QP down (eV)\n1,5,6\n",
+                "1:1",
+                "hold energies",
+            ),
+            (
+                "k,n,E_KS - E_F (eV),E_QP - E_VBM (eV)\n1,1,5,6\n",
+                "1:5",
+                "the zero",
+            ),
+            (
+                "# energies in eV below E_F\nn,E_QP\n1,5\n",
+                "1:3",
+                "downwards",
+            ),
+            ("n,E_QP (1)\n1,5\n", "1:3", "`1`"),
+            ("spin,n,E_QP (eV)\nα,1,5\n", "2:1", "`up` or `down`"),
+            (
+                "n E_KS (eV) E_QP (eV)\n1 -15.0000-105.0000\n2 5 6\n",
+                "2:20",
+                "expected 3 fields",
+            ),
+        ],
+    );
+}
+
+#[test]
+fn odd_texts_are_read_as_they_say() {
+    for (text, axis, reference, energy) in [
+        (
+            "(E − E_F)/eV,counts\n-1,2\n",
+            AxisKind::FinalState,
+            Reference::Fermi,
+            -1.0,
+        ),
+        (
+            "E-EF_meV counts\n-100 2\n",
+            AxisKind::FinalState,
+            Reference::Fermi,
+            -0.1,
+        ),
+        (
+            "binding energy / eV,counts\n-1,2\n",
+            AxisKind::Binding,
+            Reference::Unknown,
+            -1.0,
+        ),
+        (
+            "# energies below E_F\nE (eV),counts\n1,2\n",
+            AxisKind::Binding,
+            Reference::Fermi,
+            1.0,
+        ),
+        (
+            "KE (eV),counts,\r1,2,\r",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+        (
+            "KE (eV)\tcounts\r\n\"1\"\t2\r\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+        (
+            "# x\n\u{feff}KE (eV),counts\n\u{feff}1,2\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+        (
+            "KE (eV),counts\n1,2\n# KE (eV),counts\n2,3\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+    ] {
+        let parsed = read_spectrum(Source::from_text("t", text), &Hints::default());
+        let document = parsed
+            .unwrap_or_else(|why| panic!("{text:?}: {why:?}"))
+            .document;
+        assert_eq!(
+            (document.axis, document.reference),
+            (axis, reference),
+            "{text:?}"
+        );
+        assert_eq!(document.energy_ev[0], energy, "{text:?}");
+    }
+    let hartree = read_levels(
+        Source::from_text("t", "n,E_HF (a.u.)\n1,-0.5\n"),
+        &Hints::default(),
+    );
+    let energies = hartree.unwrap().document.energy_mean_field_ev.unwrap();
+    assert!((energies[0] + 0.5 * 27.211_386_245_981).abs() < 1e-12);
+}
+
+/// Lines of any length are read, or refused in few words, in time that grows as they do.
+#[test]
+fn long_lines_are_no_trap() {
+    let many = 30_000;
+    let wide = |name: &str, cell: &str, by: &str| {
+        let names = format!("KE (eV){by}counts{}", format!("{by}{name}").repeat(many));
+        format!("{names}\n1{by}2{}\n", format!("{by}{cell}").repeat(many))
+    };
+    let started = Instant::now();
+    for (text, columns) in [
+        (wide("x", "1", ","), many + 2),
+        (wide("x", "1", "  "), many + 2),
+        (
+            format!("#{}\nKE (eV),counts\n1,2\n", "a=b,".repeat(many)),
+            2,
+        ),
+        (
+            format!("#{}a=b\nKE (eV),counts\n1,2\n", "a=b,".repeat(many)),
+            2,
+        ),
+    ] {
+        let parsed = read_spectrum(Source::from_text("t", &text), &Hints::default());
+        assert_eq!(parsed.unwrap().columns.len(), columns);
+    }
+    let text = format!("KE (eV),counts\n1,2\n{},2\n", "x".repeat(500_000));
+    assert!(problems(&text, false)[0].to_string().len() < 300);
+    assert!(started.elapsed() < Duration::from_secs(20));
+}
