@@ -185,6 +185,17 @@ const CONDITIONS: [Condition; 8] = [
     ),
 ];
 
+/// The unit that a condition is kept in, as it follows a number.
+fn unit(key: ConditionKey) -> &'static str {
+    match key {
+        ConditionKey::SampleBias => " V",
+        ConditionKey::Temperature => " K",
+        ConditionKey::Dwell => " s",
+        ConditionKey::Sweeps => "",
+        _ => " eV",
+    }
+}
+
 /// The section with what the file says filled in. What the two say differently is a problem that
 /// shows both; what the metal's file says must fit too, where the axis depends on it.
 fn reconciled(
@@ -200,10 +211,11 @@ fn reconciled(
             match slot {
                 Some(known) if differ(known.value, found.value) => problems.push(
                     Problem::new(format!(
-                        "the study and {} state different values of the {name}: {} and {}",
+                        "the study and {} state different values of the {name}: {} and {}{}",
                         spectrum.source.name(),
                         known.value,
-                        found.value
+                        found.value,
+                        unit(key)
                     ))
                     .at(known.place.clone())
                     .with_related(found.place.clone(), "the file says")
@@ -220,8 +232,10 @@ fn reconciled(
         {
             problems.push(
                 Problem::new(format!(
-                    "the metal was measured at another {name} than the sample: {} and {}",
-                    found.value, known.value
+                    "the metal was measured at another {name} than the sample: {} and {}{}",
+                    found.value,
+                    known.value,
+                    unit(key)
                 ))
                 .at(found.place)
                 .with_related(known.place.clone(), "the sample's")

@@ -106,7 +106,7 @@ fn add_offset(input: &SideInput, scale: &mut Scale) {
 fn from_kinetic(input: &SideInput) -> Result<Scale, Problem> {
     let section = &input.section;
     let Some(photon) = &section.photon_energy else {
-        return Err(kinetic_needs(input, "photon_energy = \"… eV\""));
+        return Err(kinetic_needs(input, without_photon_energy(input)));
     };
     let mut scale = Scale {
         sign: 1.0,
@@ -120,6 +120,32 @@ fn from_kinetic(input: &SideInput) -> Result<Scale, Problem> {
         Side::Conduction => cathode_zero(input, &mut scale)?,
     }
     Ok(scale)
+}
+
+/// What ties a kinetic axis that has no photon energy.
+fn without_photon_energy(input: &SideInput) -> &'static str {
+    let section = &input.section;
+    let has_zero = match input.side {
+        Side::Valence => {
+            section.analyser_work_function.is_some()
+                || section.sample_work_function.is_some()
+                || input.spectrum.document.reference != Reference::Unknown
+        }
+        Side::Conduction => section.cathode_work_function.is_some(),
+    };
+    match (has_zero, input.side) {
+        (true, _) => {
+            "photon_energy = \"… eV\", or fermi_edge = \"FILE\" of a metal on the same axis"
+        }
+        (false, Side::Valence) => {
+            "fermi_edge = \"FILE\" of a metal on the same axis, or photon_energy = \"… eV\" and \
+             analyser_work_function = \"… eV\""
+        }
+        (false, Side::Conduction) => {
+            "fermi_edge = \"FILE\" of a metal on the same axis, or photon_energy = \"… eV\", \
+             cathode_work_function = \"… eV\" and cathode_temperature = \"… K\""
+        }
+    }
 }
 
 /// Photoemission: one of the three zeros of a kinetic axis.
@@ -325,8 +351,8 @@ fn check_against_work_function(input: &SideInput, edge: &MetalEdge) -> Result<()
     ))
     .at(phi.place.clone())
     .with_help(format!(
-        "the edge stands at {:.3} eV on the axis, the work function puts it at {:.3} eV: remove \
-         the one that is wrong (work function, photon energy, bias and its sign)",
+        "the edge stands at {:.3} eV on the axis, the work function puts it at {:.3} eV: correct \
+         or remove the one that is wrong (work function, photon energy, bias and its sign)",
         edge.position, -other.offset
     ));
     Err(match file {

@@ -16,7 +16,7 @@
 //! - `shift_valence` = `valence_edge` - 0 and `shift_conduction` = `conduction_edge` - `computed_gap`: measured
 //!   minus computed, against the table as it stands.
 //! - The data are made from levels at 20,000 random k-points of the full zone with the two extremal
-//!   points among them. The table holds 600 of these, again with the two extremal points, all of equal
+//!   points among them. The table holds 2,000 of these, again with the two extremal points, all of equal
 //!   weight, so the sampling of the zone is a real error of the table.
 //! - The recorded kinetic energy of an electron is `E - E_F` + (true photon energy) - (true work function) +
 //!   (displacement of the channels). The work function is 0.02 off what the study states (normal), the

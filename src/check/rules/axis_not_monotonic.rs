@@ -49,7 +49,8 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
                         subject.text(row, Role::Energy),
                         subject.text(row - 1, Role::Energy)
                     ),
-                    "give each sweep a file of its own, or add the sweeps first",
+                    "give each sweep a file of its own, or add the sweeps first; a row in the wrong \
+                     place goes back to its own",
                 )
             })
             .collect(),

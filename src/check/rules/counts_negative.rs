@@ -17,7 +17,7 @@ rule! {
     ///
     /// # How to answer it
     /// Use the counts as recorded; the fit has a background of its own. If only the corrected curve
-    /// is left, say so: `unit.intensity = "arb. u."` for that spectrum, and its noise is estimated.
+    /// is left, say so in its header: `intensity (arb. u.)`. Its noise is then estimated.
     ///
     /// # Source
     /// Common practice, no source.

@@ -181,7 +181,12 @@ impl Study {
                 .iter()
                 .map(|error| {
                     let span = error.span().unwrap_or(0..0);
-                    Problem::new(format!("not TOML: {}", error.message())).at(source.place(span))
+                    Problem::new(format!("not TOML: {}", error.message()))
+                        .at(source.place(span))
+                        .with_help(
+                            "a study is TOML: [table] on a line of its own, then key = \"text\" \
+                             line by line",
+                        )
                 })
                 .collect());
         }

@@ -32,6 +32,15 @@ impl Dimension {
         }
     }
 
+    fn unit(self) -> &'static str {
+        match self {
+            Self::Energy => "eV",
+            Self::Potential => "V",
+            Self::Temperature => "K",
+            Self::Time => "s",
+        }
+    }
+
     fn example(self) -> &'static str {
         match self {
             Self::Energy => "\"4.37 eV\"",
@@ -218,15 +227,8 @@ impl<'a> Reader<'a> {
                 place,
             }),
             DeValue::Table(table) => self.quantity_table(name, table, dimension, place),
-            _ => {
-                self.problem(
-                    Problem::new(format!("{name} needs its unit"))
-                        .at(place)
-                        .with_help(format!(
-                            "write {key} = {}, or {{ value = …, standard_uncertainty = … }}",
-                            dimension.example()
-                        )),
-                );
+            other => {
+                self.problem(without_unit(&name, key, other, dimension).at(place));
                 None
             }
         }
@@ -245,8 +247,13 @@ impl<'a> Reader<'a> {
             asked: Vec::new(),
         };
         let mut read = |key: &'static str| -> Option<(f64, Place)> {
-            let (text, place) = self.text(&mut inner, key)?;
-            let number = self.number(&inner.path(key), &text, dimension, &place)?;
+            let value = inner.value(key)?;
+            let (name, place) = (inner.path(key), self.place(value.span()));
+            let DeValue::String(text) = value.get_ref() else {
+                self.problem(without_unit(&name, key, value.get_ref(), dimension).at(place));
+                return None;
+            };
+            let number = self.number(&name, text, dimension, &place)?;
             Some((number, place))
         };
         let value = read("value");
@@ -446,6 +453,28 @@ impl<'a> Section<'a> {
     fn value(&mut self, key: &'static str) -> Option<&'a Spanned<DeValue<'a>>> {
         self.asked.push(key);
         self.table?.get(key)
+    }
+}
+
+/// The problem of a quantity that is no text: a bare number, mostly.
+fn without_unit(name: &str, key: &str, value: &DeValue<'_>, dimension: Dimension) -> Problem {
+    let float = value.as_float().map(toml::de::DeFloat::as_str);
+    let number = float.or(value.as_integer().map(toml::de::DeInteger::as_str));
+    match number {
+        Some(number) => {
+            Problem::new(format!("{name} is a number without a unit")).with_help(format!(
+                "write it as text with its unit, as in {key} = \"{number} {}\"",
+                dimension.unit()
+            ))
+        }
+        None => Problem::new(format!(
+            "{name} must be a quantity, found {}",
+            value.type_str()
+        ))
+        .with_help(format!(
+            "write it as text with its unit, as in {key} = {}",
+            dimension.example()
+        )),
     }
 }
 
