@@ -41,7 +41,11 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
         rule,
         (0, role),
         "the k-points have no weights, so all count alike".to_owned(),
-        format!("{} levels without a weight", levels.rows),
+        format!(
+            "{} levels without a weight, the first at k-point {}",
+            levels.rows,
+            subject.text(0, role)
+        ),
         "add a column \"weight\"; a grid reduced by symmetry is read wrong without it",
     )]
 }
