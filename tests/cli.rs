@@ -24,7 +24,13 @@ const FILES: [&str; 7] = [
 fn demo() -> TempDir {
     let folder = tempfile::tempdir().unwrap();
     let source = Path::new(env!("CARGO_MANIFEST_DIR")).join("fixtures/demo");
-    for name in ["study.toml", "levels.csv", "pes.csv", "metal.csv", "ipes.csv"] {
+    for name in [
+        "study.toml",
+        "levels.csv",
+        "pes.csv",
+        "metal.csv",
+        "ipes.csv",
+    ] {
         fs::copy(source.join(name), folder.path().join(name)).unwrap();
     }
     folder
@@ -92,13 +98,27 @@ fn refused(folder: &TempDir) -> String {
     assert_eq!(output.status.code(), Some(2), "{message}");
     assert_eq!(text(&output.stdout), "");
     assert!(contents(folder.path()) == before, "nothing is written");
-    let place = message.lines().find_map(|line| line.trim().strip_prefix("--> "));
+    let place = message
+        .lines()
+        .find_map(|line| line.trim().strip_prefix("--> "));
     let mut parts = place.expect("a place").split(':');
-    assert!(folder.path().join(parts.next().unwrap()).is_file(), "{message}");
-    assert!(parts.next().unwrap().parse::<usize>().unwrap() > 0, "{message}");
-    assert!(parts.next().unwrap().parse::<usize>().unwrap() > 0, "{message}");
+    assert!(
+        folder.path().join(parts.next().unwrap()).is_file(),
+        "{message}"
+    );
+    assert!(
+        parts.next().unwrap().parse::<usize>().unwrap() > 0,
+        "{message}"
+    );
+    assert!(
+        parts.next().unwrap().parse::<usize>().unwrap() > 0,
+        "{message}"
+    );
     let json = compare(folder, &["study.toml", "--out", "out", "--json"]);
-    assert_eq!((json.status.code(), text(&json.stdout)), (Some(2), String::new()));
+    assert_eq!(
+        (json.status.code(), text(&json.stdout)),
+        (Some(2), String::new())
+    );
     assert_eq!(text(&json.stderr), message);
     message
 }
@@ -110,7 +130,9 @@ fn refused_with(file: &str, from: &str, to: &str) -> String {
 }
 
 fn number(value: &Value) -> f64 {
-    value.as_f64().unwrap_or_else(|| panic!("a number: {value}"))
+    value
+        .as_f64()
+        .unwrap_or_else(|| panic!("a number: {value}"))
 }
 
 fn assert_holds(quantity: &Value, truth: &Value) {
@@ -147,7 +169,10 @@ fn result_of_the_demo_holds_the_truth_and_lists_its_files() {
     let result = answered(&folder);
     let truth = truth();
     assert_holds(&result["measured"]["valence_edge"], &truth["valence_edge"]);
-    assert_holds(&result["measured"]["conduction_edge"], &truth["conduction_edge"]);
+    assert_holds(
+        &result["measured"]["conduction_edge"],
+        &truth["conduction_edge"],
+    );
     assert_holds(&result["measured"]["gap"], &truth["gap"]);
     assert_holds(&result["shift"]["valence"], &truth["shift_valence"]);
     assert_holds(&result["shift"]["conduction"], &truth["shift_conduction"]);
@@ -168,9 +193,18 @@ fn result_of_the_demo_holds_the_truth_and_lists_its_files() {
         assert_eq!(file["size_bytes"], bytes.len(), "{name}");
     }
     assert_eq!(result["files"].as_array().unwrap().len(), FILES.len() - 1);
-    for source in ["study.toml", "levels.csv", "pes.csv", "metal.csv", "ipes.csv"] {
+    for source in [
+        "study.toml",
+        "levels.csv",
+        "pes.csv",
+        "metal.csv",
+        "ipes.csv",
+    ] {
         let sources = result["provenance"]["sources"].as_array().unwrap();
-        assert!(sources.iter().any(|known| known["file"] == source), "{source}");
+        assert!(
+            sources.iter().any(|known| known["file"] == source),
+            "{source}"
+        );
     }
 }
 
@@ -192,13 +226,24 @@ fn a_result_is_replaced_only_where_asked_and_is_the_same_for_any_number_of_threa
     let first = contents(&out);
 
     let again = run("1", &[]);
-    assert_eq!((again.status.code(), text(&again.stdout)), (Some(2), String::new()));
+    assert_eq!(
+        (again.status.code(), text(&again.stdout)),
+        (Some(2), String::new())
+    );
     insta::assert_snapshot!(text(&again.stderr), @"out/result.json exists already: choose another folder, or ask for the old result to be replaced (--replace)");
     assert!(contents(&out) == first, "nothing is changed");
 
     let replaced = run("2", &["--replace"]);
-    assert_eq!(replaced.status.code(), Some(0), "{}", text(&replaced.stderr));
-    assert!(contents(&out) == first, "the same bytes, and what is not ours stays");
+    assert_eq!(
+        replaced.status.code(),
+        Some(0),
+        "{}",
+        text(&replaced.stderr)
+    );
+    assert!(
+        contents(&out) == first,
+        "the same bytes, and what is not ours stays"
+    );
 }
 
 #[test]
@@ -228,8 +273,14 @@ fn several_studies_are_answered_together_or_not_at_all() {
     fs::remove_dir_all(path("out")).unwrap();
     edit(&folder, "other.toml", "\"ipes.csv\"", "\"missing.csv\"");
     let output = compare(&folder, &arguments);
-    assert_eq!((output.status.code(), text(&output.stdout)), (Some(2), String::new()));
-    assert!(!path("out").exists(), "the study that could be answered waits for the other");
+    assert_eq!(
+        (output.status.code(), text(&output.stdout)),
+        (Some(2), String::new())
+    );
+    assert!(
+        !path("out").exists(),
+        "the study that could be answered waits for the other"
+    );
 }
 
 #[test]
@@ -262,7 +313,11 @@ fn two_units_in_one_header() {
 
 #[test]
 fn two_units_in_comment_and_header() {
-    let message = refused_with("levels.csv", "# k in units", "# energies in eV\n# k in units");
+    let message = refused_with(
+        "levels.csv",
+        "# k in units",
+        "# energies in eV\n# k in units",
+    );
     insta::assert_snapshot!(message, @r#"
     error: the unit of energy-mean-field is given as Ha by the header cell `E_MF (Ha)` on line 6, and as eV by the comment on line 4
      --> levels.csv:6:25
@@ -519,13 +574,18 @@ fn every_problem_is_told_at_once() {
 #[test]
 fn final_state_axis_with_no_reference_has_no_gap() {
     let folder = demo();
-    edit(&folder, "ipes.csv", "E - E_F (eV)", "Final state energy (eV)");
+    edit(
+        &folder,
+        "ipes.csv",
+        "E - E_F (eV)",
+        "Final state energy (eV)",
+    );
     let result = answered(&folder);
     assert_eq!(result["measured"]["gap"], Value::Null);
     assert_eq!(result["difference"], Value::Null);
     assert_eq!(result["en_score"], Value::Null);
     assert_eq!(result["verdict"]["agrees"], Value::Null);
-    insta::assert_snapshot!(result["verdict"]["statement"].as_str().unwrap(), @"No verdict: the two measured sides are not tied to one reference; state reference = \"fermi\" for both, or give the Fermi edge of a metal (fermi_edge) for the side that has none.");
+    insta::assert_snapshot!(result["verdict"]["statement"].as_str().unwrap(), @"No verdict: nothing ties the energies of inverse photoemission to a reference; state reference = \"fermi\" there if they count from the Fermi level, or give the Fermi edge of a metal (fermi_edge).");
 }
 
 #[test]
@@ -549,9 +609,72 @@ fn photoemission_alone_has_an_edge_and_no_gap() {
     let stop = study.find("[corrections]").unwrap();
     edit(&folder, "study.toml", &study[start..stop], "");
     let result = answered(&folder);
-    assert_holds(&result["measured"]["valence_edge"], &truth()["valence_edge"]);
+    assert_holds(
+        &result["measured"]["valence_edge"],
+        &truth()["valence_edge"],
+    );
     assert_eq!(result["measured"]["conduction_edge"], Value::Null);
     assert_eq!(result["measured"]["gap"], Value::Null);
     assert_eq!(result["verdict"]["agrees"], Value::Null);
     insta::assert_snapshot!(result["verdict"]["statement"].as_str().unwrap(), @"No verdict: a gap needs both photoemission and inverse photoemission; the study names one of them.");
+}
+
+/// What a message advises is followed here, and the demo is answered as before.
+#[test]
+fn advice_settles_what_it_is_given_for() {
+    let photoemission = "spectrum = \"pes.csv\"\n";
+    let cases = [
+        (
+            ("levels.csv", "E_QP (Ha)", "E_QP"),
+            (
+                "levels = \"levels.csv\"\n",
+                "unit.energy-quasiparticle = \"Ha\"\n",
+            ),
+        ),
+        (
+            ("pes.csv", "Kinetic energy / eV", "Energy / eV"),
+            (photoemission, "axis = \"kinetic\"\n"),
+        ),
+        (
+            ("ipes.csv", "E - E_F (eV)", "Final state energy (eV)"),
+            ("spectrum = \"ipes.csv\"\n", "reference = \"fermi\"\n"),
+        ),
+        (
+            ("study.toml", "fermi_edge = \"metal.csv\"\n", ""),
+            (photoemission, "analyser_work_function = \"4.376 eV\"\n"),
+        ),
+        (
+            (
+                "pes.csv",
+                "# technique",
+                "# photon energy: 40.814 eV\n# technique",
+            ),
+            (photoemission, ""),
+        ),
+    ];
+    for (index, ((file, from, to), (after, advice))) in cases.into_iter().enumerate() {
+        let folder = demo();
+        edit(&folder, file, from, to);
+        edit(&folder, "study.toml", after, &format!("{after}{advice}"));
+        if advice.is_empty() {
+            edit(&folder, "pes.csv", "40.814 eV", "21.218 eV");
+        }
+        let result = answered(&folder);
+        assert_eq!(result["verdict"]["agrees"], true, "case {index}");
+        assert_holds(&result["measured"]["gap"], &truth()["gap"]);
+    }
+}
+
+/// A curve that was corrected is no longer counts: renamed as advised it is read, its noise estimated.
+#[test]
+fn corrected_curve_is_read_as_what_it_is() {
+    let folder = demo();
+    edit(&folder, "pes.csv", "16.950;60", "16.950;-6");
+    edit(&folder, "pes.csv", "eV;counts", "eV;intensity (arb. u.)");
+    let result = answered(&folder);
+    assert_eq!(result["fits"][0]["statistics"], "estimated-variance");
+    assert_holds(
+        &result["measured"]["valence_edge"],
+        &truth()["valence_edge"],
+    );
 }

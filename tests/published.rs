@@ -250,14 +250,24 @@ fn end_gauge_of_the_guide() {
     let guide = wanted("effective degrees of freedom");
     assert!((degrees - guide).abs() < 0.1, "{degrees}");
     let factor = found.coverage_factor;
-    assert!((factor - wanted("unrounded t 95 % at 16")).abs() < 5e-7, "{factor}");
+    assert!(
+        (factor - wanted("unrounded t 95 % at 16")).abs() < 5e-7,
+        "{factor}"
+    );
     assert!(close(found.expanded_uncertainty_ev, factor * u, 1e-15));
     // Printed as 68, from u rounded up to 32 nm: 2.12 * 31.66 = 67.1.
     let printed = wanted("expanded uncertainty 95 %");
     let expanded = found.expanded_uncertainty_ev;
     assert!((printed - 1.0..printed).contains(&expanded), "{expanded}");
-    let squares = budget.rows().iter().map(|row| row.difference_ev.powi(2)).sum::<f64>();
-    assert!(close(squares.sqrt(), u, 1e-15), "the rows add up to the whole");
+    let squares = budget
+        .rows()
+        .iter()
+        .map(|row| row.difference_ev.powi(2))
+        .sum::<f64>();
+    assert!(
+        close(squares.sqrt(), u, 1e-15),
+        "the rows add up to the whole"
+    );
 }
 
 /// Lays the tangent to a noise-free broadened density over channels of a thousandth of a standard
@@ -273,7 +283,10 @@ fn laid(density: impl Fn(f64) -> f64, reach: f64, width: f64) -> (f64, f64) {
     let mirrored: Vec<f64> = energies.iter().rev().map(|e| -e).collect();
     let other = tangent(&mirrored, &turned, &variances, options(Side::Valence)).unwrap();
     // Reflection leaves the order of additions alone: only signs change.
-    assert!((found.onset + other.onset).abs() < 1e-12, "{found:?} {other:?}");
+    assert!(
+        (found.onset + other.onset).abs() < 1e-12,
+        "{found:?} {other:?}"
+    );
     (-found.onset, found.centre)
 }
 
@@ -298,7 +311,10 @@ fn tangent_to_a_broadened_step() {
         let wanted = true_bias * (1.0 + width * width / 40.0);
         // What is left is of fourth order in the width; the background is good to some 1e-5.
         let tolerance = 5e-5 + 0.01 * width.powi(4);
-        assert!((found - wanted).abs() < tolerance, "{width}: {found} {wanted}");
+        assert!(
+            (found - wanted).abs() < tolerance,
+            "{width}: {found} {wanted}"
+        );
         assert!(touches.abs() < 2e-3, "{touches}");
     }
     let in_fwhm = laid(step, 6.0, 0.1).0 / FWHM_PER_SIGMA;
@@ -320,14 +336,19 @@ fn tangent_to_a_broadened_square_root() {
     // With E = u^2 the integrand is even and analytic: the trapezoid rule is exact to rounding.
     let root = |e: f64| {
         let terms = (1..200).map(|i| f64::from(i) * 0.02);
-        let sum: f64 = terms.map(|u| u * u * (-0.5 * (e - u * u).powi(2)).exp()).sum();
+        let sum: f64 = terms
+            .map(|u| u * u * (-0.5 * (e - u * u).powi(2)).exp())
+            .sum();
         2.0 * sum * 0.02 / (2.0 * std::f64::consts::PI).sqrt()
     };
     let wanted = published_bias("square-root", "gaussian", "0.76495086738976");
     let (found, touches) = laid(root, 6.0, 0.1);
     // Second order in the width, as for the step: 2.5e-4 of the depth below the touching point.
     assert!((found - wanted).abs() < 1e-3, "{found} {wanted}");
-    assert!((touches - wanted).abs() < 2e-2, "it touches as far inside: {touches}");
+    assert!(
+        (touches - wanted).abs() < 2e-2,
+        "it touches as far inside: {touches}"
+    );
 }
 
 /// A linear density has no steepest slope short of the end of the reach. Wherever the line touches,
@@ -401,7 +422,10 @@ fn metal_edge_is_unbiased_and_knows_its_uncertainty() {
         let inside = list.iter().filter(|pull| pull.abs() <= 1.96).count();
         println!("{what}: mean pull {mean:+.3}, spread {spread:.3}, {inside} within 1.96");
         assert!(mean.abs() < 4.0 * 0.071, "{what}: mean pull {mean}");
-        assert!((spread - 1.0).abs() < 4.0 * 0.050, "{what}: spread of pulls {spread}");
+        assert!(
+            (spread - 1.0).abs() < 4.0 * 0.050,
+            "{what}: spread of pulls {spread}"
+        );
         assert!(inside >= 178, "{what}: {inside} of {FITS} within 1.96");
     }
 }
@@ -420,11 +444,24 @@ fn metal_edge_of_empty_states_is_the_mirrored_one() {
         let occupied = fit(&energies, &counts, Side::Valence);
         let empty = fit(&mirrored, &turned, Side::Conduction);
         let far = occupied.position_uncertainty * 1e-3;
-        assert!((occupied.position + empty.position).abs() < far, "{occupied:?} {empty:?}");
-        assert!(close(empty.position_uncertainty, occupied.position_uncertainty, 1e-3));
+        assert!(
+            (occupied.position + empty.position).abs() < far,
+            "{occupied:?} {empty:?}"
+        );
+        assert!(close(
+            empty.position_uncertainty,
+            occupied.position_uncertainty,
+            1e-3
+        ));
     }
     // The other side's curve falls where it must rise: no fit.
     let (energies, counts, _) = metal(0, thermal);
-    let none = fit_metal_edge(&energies, &counts, &Noise::Poisson, thermal, Side::Conduction);
+    let none = fit_metal_edge(
+        &energies,
+        &counts,
+        &Noise::Poisson,
+        thermal,
+        Side::Conduction,
+    );
     assert_eq!(none, None);
 }

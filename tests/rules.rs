@@ -39,7 +39,10 @@ fn findings(text: &str, shown: &str) -> Vec<Finding> {
         let parsed = read_levels(source, &hints).unwrap_or_else(|e| panic!("{shown}: {e:#?}"));
         validate_levels(parsed).1
     } else {
-        assert!(first.starts_with("# Invented. Spectrum"), "{shown}: {first}");
+        assert!(
+            first.starts_with("# Invented. Spectrum"),
+            "{shown}: {first}"
+        );
         let parsed = read_spectrum(source, &hints).unwrap_or_else(|e| panic!("{shown}: {e:#?}"));
         validate_spectrum(parsed).1
     }
@@ -67,7 +70,12 @@ fn cell(text: &str, line: usize, column: usize) -> (String, usize) {
 #[test]
 fn names_are_unique_sorted_and_well_formed() {
     let names: Vec<&str> = CATALOGUE.iter().map(|rule| rule.name()).collect();
-    let sorted: Vec<&str> = names.iter().copied().collect::<BTreeSet<_>>().into_iter().collect();
+    let sorted: Vec<&str> = names
+        .iter()
+        .copied()
+        .collect::<BTreeSet<_>>()
+        .into_iter()
+        .collect();
     assert_eq!(names, sorted);
     for name in names {
         let words = name.split('-');
@@ -80,7 +88,11 @@ fn names_are_unique_sorted_and_well_formed() {
 fn manual_pages_have_every_heading_in_order_with_text_under_it() {
     for rule in CATALOGUE {
         let lines: Vec<&str> = rule.manual().lines().map(str::trim).collect();
-        let headings: Vec<&str> = lines.iter().copied().filter(|l| l.starts_with('#')).collect();
+        let headings: Vec<&str> = lines
+            .iter()
+            .copied()
+            .filter(|l| l.starts_with('#'))
+            .collect();
         assert_eq!(headings, HEADINGS, "{}", rule.name());
         for part in rule.manual().split("# ").skip(1) {
             let (_, body) = part.split_once('\n').unwrap();
@@ -97,7 +109,10 @@ fn bad_fixtures_fire_their_rule_where_they_say() {
         let text = fixture(name, "bad.csv");
         let found = findings(&text, &shown);
         let (own, other): (Vec<_>, Vec<_>) = found.iter().partition(|f| f.rule == name);
-        assert!(other.iter().all(|f| f.severity < Severity::Error), "{other:#?}");
+        assert!(
+            other.iter().all(|f| f.severity < Severity::Error),
+            "{other:#?}"
+        );
         let [finding] = own.as_slice() else {
             panic!("{name} fires {} times: {own:#?}", own.len());
         };
@@ -112,8 +127,8 @@ fn bad_fixtures_fire_their_rule_where_they_say() {
         assert_eq!(field.header, named, "{name}");
         assert_eq!((finding.severity, &finding.file), (rule.severity(), &shown));
         // A level is named by the lines of its two rows, a value by its text.
-        let names_it = finding.evidence.contains(wanted)
-            || finding.evidence.contains(&format!(" and {line}"));
+        let names_it =
+            finding.evidence.contains(wanted) || finding.evidence.contains(&format!(" and {line}"));
         assert!(names_it, "{name}: {}", finding.evidence);
         assert!(!finding.message.is_empty() && !finding.remedy.is_empty());
     }
@@ -134,9 +149,13 @@ fn an_error_withholds_the_document_and_a_warning_does_not() {
         let text = fixture(rule.name(), "bad.csv");
         let source = Source::from_text("bad.csv", &text);
         let passed = if text.starts_with("# Invented. Levels") {
-            validate_levels(read_levels(source, &Hints::default()).unwrap()).0.is_some()
+            validate_levels(read_levels(source, &Hints::default()).unwrap())
+                .0
+                .is_some()
         } else {
-            validate_spectrum(read_spectrum(source, &Hints::default()).unwrap()).0.is_some()
+            validate_spectrum(read_spectrum(source, &Hints::default()).unwrap())
+                .0
+                .is_some()
         };
         assert_eq!(passed, rule.severity() < Severity::Error, "{}", rule.name());
     }

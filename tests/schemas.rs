@@ -18,7 +18,9 @@ fn root() -> PathBuf {
 }
 
 fn schema_path<T: Document>() -> PathBuf {
-    root().join("schemas").join(format!("{}.schema.json", T::KIND))
+    root()
+        .join("schemas")
+        .join(format!("{}.schema.json", T::KIND))
 }
 
 /// What a validator objects to, each with the place in the document. The schema is the generated one,
@@ -26,7 +28,9 @@ fn schema_path<T: Document>() -> PathBuf {
 fn objections<T: Document>(document: &Value) -> Vec<String> {
     let validator = draft202012::new(&json_schema::<T>()).unwrap();
     let errors = validator.iter_errors(document);
-    errors.map(|e| format!("{}: {e}", e.instance_path)).collect()
+    errors
+        .map(|e| format!("{}: {e}", e.instance_path))
+        .collect()
 }
 
 fn assert_valid<T: Document>(document: &Value) {
@@ -36,9 +40,14 @@ fn assert_valid<T: Document>(document: &Value) {
 
 fn assert_broken<T: Document>(document: &Value, place: &str) {
     let objections = objections::<T>(document);
-    let there = objections.iter().any(|objection| objection.starts_with(place));
+    let there = objections
+        .iter()
+        .any(|objection| objection.starts_with(place));
     assert!(there, "an objection at {place:?} among {objections:#?}");
-    assert!(serde_json::from_value::<T>(document.clone()).is_err(), "at {place:?}");
+    assert!(
+        serde_json::from_value::<T>(document.clone()).is_err(),
+        "at {place:?}"
+    );
 }
 
 fn demo(name: &str) -> Source {
@@ -55,7 +64,9 @@ fn levels() -> Levels {
 }
 
 fn spectrum(name: &str) -> Spectrum {
-    read_spectrum(demo(name), &Hints::default()).unwrap().document
+    read_spectrum(demo(name), &Hints::default())
+        .unwrap()
+        .document
 }
 
 /// The demo's result as the program writes it.
@@ -81,7 +92,10 @@ fn is_current<T: Document>() {
     }
     let found = fs::read_to_string(&path).unwrap_or_default();
     assert!(found == text, "{} is old: run with BLESS=1", path.display());
-    assert_eq!(schema["$schema"], "https://json-schema.org/draft/2020-12/schema");
+    assert_eq!(
+        schema["$schema"],
+        "https://json-schema.org/draft/2020-12/schema"
+    );
     draft202012::meta::validate(&schema).unwrap();
 }
 
@@ -98,7 +112,10 @@ fn schemas_are_current_and_schemas() {
 fn documents_of_the_demo_are_valid_and_come_back() {
     let document = serde_json::to_value(levels()).unwrap();
     assert_valid::<Levels>(&document);
-    assert_eq!(serde_json::from_value::<Levels>(document).unwrap(), levels());
+    assert_eq!(
+        serde_json::from_value::<Levels>(document).unwrap(),
+        levels()
+    );
     for name in ["pes.csv", "metal.csv", "ipes.csv"] {
         let document = serde_json::to_value(spectrum(name)).unwrap();
         assert_valid::<Spectrum>(&document);
@@ -159,7 +176,14 @@ fn numbers_that_are_not_finite_travel_as_words() {
 #[test]
 fn broken_documents_are_not_valid() {
     let document = serde_json::to_value(spectrum("pes.csv")).unwrap();
-    for key in ["schema", "provenance", "axis", "energy_ev", "intensity_kind", "conditions"] {
+    for key in [
+        "schema",
+        "provenance",
+        "axis",
+        "energy_ev",
+        "intensity_kind",
+        "conditions",
+    ] {
         let mut broken = document.clone();
         broken.as_object_mut().unwrap().remove(key);
         assert_broken::<Spectrum>(&broken, "");
@@ -185,5 +209,8 @@ fn a_document_of_another_kind_is_not_valid() {
     let mut document = serde_json::to_value(spectrum("pes.csv")).unwrap();
     document["schema"] = json!("bandrule/levels/1");
     let objections = objections::<Spectrum>(&document);
-    assert!(objections.iter().any(|o| o.starts_with("/schema")), "{objections:?}");
+    assert!(
+        objections.iter().any(|o| o.starts_with("/schema")),
+        "{objections:?}"
+    );
 }

@@ -23,18 +23,20 @@ impl<T> Deref for Validated<T> {
 #[must_use]
 pub fn validate_levels(parsed: Parsed<Levels>) -> (Option<Validated<Levels>>, Vec<Finding>) {
     let findings = run(Subject::Levels(&parsed));
-    (passed(&findings).then(|| Validated(parsed)), findings)
+    (passed(&findings).then_some(Validated(parsed)), findings)
 }
 
 /// Runs the rules over a curve. The document comes back only where no finding is an error.
 #[must_use]
 pub fn validate_spectrum(parsed: Parsed<Spectrum>) -> (Option<Validated<Spectrum>>, Vec<Finding>) {
     let findings = run(Subject::Spectrum(&parsed));
-    (passed(&findings).then(|| Validated(parsed)), findings)
+    (passed(&findings).then_some(Validated(parsed)), findings)
 }
 
 fn passed(findings: &[Finding]) -> bool {
-    findings.iter().all(|finding| finding.severity < Severity::Error)
+    findings
+        .iter()
+        .all(|finding| finding.severity < Severity::Error)
 }
 
 fn run(subject: Subject<'_>) -> Vec<Finding> {

@@ -32,7 +32,11 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
         return Vec::new();
     };
     let turns = (1..energies.len()).filter(|&i| (energies[i] - energies[i - 1]) * direction < 0.0);
-    let way = if direction > 0.0 { "upwards" } else { "downwards" };
+    let way = if direction > 0.0 {
+        "upwards"
+    } else {
+        "downwards"
+    };
     most(
         turns
             .map(|row| {

@@ -31,7 +31,11 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
     if spectrum.intensity_kind != IntensityKind::Counts {
         return Vec::new();
     }
-    let negative = spectrum.intensity.iter().enumerate().filter(|(_, n)| **n < 0.0);
+    let negative = spectrum
+        .intensity
+        .iter()
+        .enumerate()
+        .filter(|(_, n)| **n < 0.0);
     most(
         negative
             .map(|(row, _)| {
