@@ -10,6 +10,16 @@
 //! instrument.
 #![forbid(unsafe_code)]
 #![deny(missing_docs)]
+// In tests exact equality of numbers is often the point, and plain loops read best.
+#![cfg_attr(
+    test,
+    allow(
+        clippy::float_cmp,
+        clippy::format_push_string,
+        clippy::maybe_infinite_iter,
+        clippy::needless_range_loop
+    )
+)]
 
 pub mod align;
 pub mod check;

@@ -48,7 +48,10 @@ impl Spread {
                 for (index, variance) in variances.iter().enumerate() {
                     total[(index, index)] += variance;
                 }
-                Some((kappa, restricted(Cholesky::new(total)?, &misfit, jacobian)?))
+                Some((
+                    kappa,
+                    restricted(&Cholesky::new(total)?, &misfit, jacobian)?,
+                ))
             })
             .collect();
         mean_over(&steps)
@@ -128,7 +131,7 @@ const SHARES: u16 = 40;
 
 /// Minus twice the logarithm of the restricted likelihood.
 fn restricted(
-    root: Cholesky<f64, Dyn>,
+    root: &Cholesky<f64, Dyn>,
     misfit: &DMatrix<f64>,
     jacobian: &DMatrix<f64>,
 ) -> Option<f64> {
@@ -140,14 +143,11 @@ fn restricted(
             .map(|x| x.ln())
             .sum::<f64>()
     };
-    let (r, j) = (
-        whiten(&root, misfit.clone()),
-        whiten(&root, jacobian.clone()),
-    );
+    let (r, j) = (whiten(root, misfit.clone()), whiten(root, jacobian.clone()));
     let information = Cholesky::new(j.tr_mul(&j))?;
     let shared = whiten(&information, j.tr_mul(&r));
     Some(
-        log_determinant(&root) + log_determinant(&information) + r.norm_squared()
+        log_determinant(root) + log_determinant(&information) + r.norm_squared()
             - shared.norm_squared(),
     )
 }

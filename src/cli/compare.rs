@@ -8,7 +8,7 @@ use std::path::{Path, PathBuf};
 use clap::Args;
 
 use super::{DONE, FINDINGS, Least, REFUSED};
-use crate::compare::{Error, Study, compare};
+use crate::compare::{Error, Outcome, Study, compare};
 use crate::export;
 use crate::parse::{Problem, render};
 use crate::schema::{Finding, ResultDocument, Severity};
@@ -39,7 +39,7 @@ pub(super) struct Arguments {
     severity: Least,
 }
 
-/// Runs the command and returns the exit status.
+/// Runs the command and returns the exit status. Nothing is written before every study is answered.
 pub(super) fn run(arguments: &Arguments) -> u8 {
     let folders = match folders(arguments) {
         Ok(folders) => folders,
@@ -50,9 +50,20 @@ pub(super) fn run(arguments: &Arguments) -> u8 {
             return refuse(&error.to_string());
         }
     }
+    let mut outcomes = Vec::new();
+    let mut refusals = Vec::new();
+    for path in &arguments.studies {
+        match compared(path) {
+            Ok(outcome) => outcomes.push(outcome),
+            Err(message) => refusals.push(message),
+        }
+    }
+    if !refusals.is_empty() {
+        return refuse(&refusals.join("\n\n"));
+    }
     let mut results = Vec::new();
-    for (path, folder) in arguments.studies.iter().zip(&folders) {
-        match one(path, folder, arguments.replace) {
+    for (outcome, folder) in outcomes.into_iter().zip(&folders) {
+        match written(outcome, folder, arguments.replace) {
             Ok(result) => results.push(result),
             Err(message) => return refuse(&message),
         }
@@ -84,13 +95,16 @@ fn folders(arguments: &Arguments) -> Result<Vec<PathBuf>, String> {
         .collect()
 }
 
-fn one(path: &Path, folder: &Path, replace: bool) -> Result<ResultDocument, String> {
+fn compared(path: &Path) -> Result<Outcome, String> {
     let shown = path.display().to_string();
     let study = Study::read(path, &shown).map_err(|problems| rendered(&problems))?;
-    let mut outcome = compare(&study).map_err(|error| match error {
+    compare(&study).map_err(|error| match error {
         Error::Refused(problems) => rendered(&problems),
         Error::Findings(findings) => told(&findings),
-    })?;
+    })
+}
+
+fn written(mut outcome: Outcome, folder: &Path, replace: bool) -> Result<ResultDocument, String> {
     export::write_result(&mut outcome.result, &outcome.curves, folder, replace)
         .map_err(|error| format!("error: {error}"))?;
     Ok(outcome.result)

@@ -4,6 +4,9 @@
 //! uncertainty, and when agreement may be stated. It takes only documents that have been through the
 //! rules, calls `align` for every fit, and writes nothing.
 
+// A problem carries its place and the places beside it: it is met once a run, not in a hot loop.
+#![allow(clippy::result_large_err)]
+
 mod bands;
 mod budget;
 mod cautions;

@@ -365,15 +365,43 @@ impl Comparison<'_> {
         }
     }
 
-    fn why_no_difference(&self) -> &'static str {
-        if self.sides.len() < 2 {
+    fn why_no_difference(&self) -> String {
+        let why = if self.sides.len() < 2 {
             "a gap needs both photoemission and inverse photoemission; the study names one of them"
         } else if !self.is_tied() {
-            "the two measured sides are not tied to one reference; state reference = \"fermi\" for \
-             both, or give the Fermi edge of a metal (fermi_edge) for the side that has none"
+            return self.what_is_not_tied();
         } else {
             "the headline protocol found no edge on one of the sides"
+        };
+        why.to_owned()
+    }
+
+    /// Which of two sides lacks a reference, or that they have different ones.
+    fn what_is_not_tied(&self) -> String {
+        let untied = self
+            .sides
+            .iter()
+            .filter(|side| side.scale.reference == Reference::Unknown);
+        let names: Vec<&str> = untied.map(|side| side.side.technique()).collect();
+        if names.is_empty() {
+            let each = self.sides.iter().map(|side| {
+                format!(
+                    "{} counts from {}",
+                    side.side.technique(),
+                    side.scale.reference
+                )
+            });
+            return format!(
+                "the two sides have no common reference ({}); give the Fermi edge of a metal \
+                 (fermi_edge) for each",
+                each.collect::<Vec<_>>().join(", ")
+            );
         }
+        format!(
+            "nothing ties the energies of {} to a reference; state reference = \"fermi\" there if \
+             they count from the Fermi level, or give the Fermi edge of a metal (fermi_edge)",
+            names.join(" and of ")
+        )
     }
 
     fn steps(&self, provenance: &mut Provenance) {

@@ -1,10 +1,10 @@
 //! From a measured axis to energies against a common reference, with what that costs in uncertainty.
 //!
-//! Photoemission, kinetic axis from the analyser's vacuum level: E - `E_F` = `E_kin` + phi +
-//! e V - h nu, with V the potential of the sample against the spectrometer: a sample at -5 V pushes its electrons
-//! to kinetic energies 5 eV higher. from the sample's vacuum level: E - `E_F` = `E_kin` + `phi_sample` minus
-//! h nu; from the Fermi level: E - `E_F` = `E_kin` - h nu. A metal's Fermi edge on the same axis
-//! supersedes all of these. Binding axis: E = -`E_B`.
+//! Photoemission, kinetic axis from the analyser's vacuum level: E - `E_F` = `E_kin` + phi + e V minus
+//! h nu, with V the potential of the sample against the spectrometer: a sample at -5 V pushes its
+//! electrons to kinetic energies 5 eV higher. From the sample's vacuum level: E - `E_F` = `E_kin` +
+//! `phi_sample` minus h nu; from the Fermi level: E - `E_F` = `E_kin` - h nu. A metal's Fermi edge on the
+//! same axis supersedes all of these. Binding axis: E = -`E_B`.
 //!
 //! Inverse photoemission, isochromat: E - `E_F` = e U + `phi_cathode` + 2 k `T_cathode` - h nu.
 

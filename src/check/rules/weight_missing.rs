@@ -27,7 +27,7 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
     let Some(levels) = subject.levels() else {
         return Vec::new();
     };
-    let role = if levels.k_index.is_some() {
+    let named_by = if levels.k_index.is_some() {
         Role::KIndex
     } else if levels.k_x.is_some() {
         Role::KX
@@ -39,12 +39,12 @@ fn check(rule: &dyn Rule, subject: Subject<'_>) -> Vec<Finding> {
     }
     vec![subject.finding(
         rule,
-        (0, role),
+        (0, named_by),
         "the k-points have no weights, so all count alike".to_owned(),
         format!(
             "{} levels without a weight, the first at k-point {}",
             levels.rows,
-            subject.text(0, role)
+            subject.text(0, named_by)
         ),
         "add a column \"weight\"; a grid reduced by symmetry is read wrong without it",
     )]
