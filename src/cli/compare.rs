@@ -158,10 +158,13 @@ fn report(arguments: &Arguments, folders: &[PathBuf], results: &[ResultDocument]
     } else {
         for (result, folder) in results.iter().zip(folders) {
             text += &export::summary(result);
-            let files: Vec<&str> = result.files.iter().map(|file| file.file.as_str()).collect();
-            let (folder, files) = (folder.display(), files.join(", "));
+            let tables = result.files.iter().filter(|f| f.file.ends_with(".csv")).count();
             // Writing to a string cannot fail.
-            let _ = writeln!(text, "\nWritten to {folder}: {files}, result.json");
+            let _ = writeln!(
+                text,
+                "\nWritten to {}: report.html, figure.svg, result.json, {tables} tables (CSV)",
+                folder.display()
+            );
         }
     }
     let findings: Vec<Finding> = results.iter().flat_map(|r| r.findings.clone()).collect();
