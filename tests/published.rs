@@ -271,10 +271,10 @@ fn end_gauge_of_the_guide() {
 }
 
 /// Lays the tangent to a noise-free broadened density over channels of a thousandth of a standard
-/// deviation. Returns its bias into the gap and where it touches.
+/// deviation, on a constant background. Returns its bias into the gap and where it touches.
 fn laid(density: impl Fn(f64) -> f64, reach: f64, width: f64) -> (f64, f64) {
     let energies: Vec<f64> = (-14_000..=6_000).map(|i| f64::from(i) * 1e-3).collect();
-    let values: Vec<f64> = energies.iter().map(|&e| density(e)).collect();
+    let values: Vec<f64> = energies.iter().map(|&e| 0.3 + density(e)).collect();
     let variances = vec![1e-10; energies.len()];
     let options = |side| TangentOptions { side, width, reach };
     let conduction = options(Side::Conduction);

@@ -61,7 +61,7 @@ fn near(found: f64, expected: f64, tolerance: f64) {
 }
 
 #[test]
-fn table_holds_the_true_extrema_and_six_hundred_points() {
+fn table_holds_the_true_extrema_and_two_thousand_points() {
     for seed in [1, 2, 3] {
         let (folder, truth) = study(seed);
         let columns = columns(&folder.path().join("levels.csv"));
@@ -83,7 +83,7 @@ fn table_holds_the_true_extrema_and_six_hundred_points() {
         for number in k {
             *levels_at.entry(*number as i64).or_insert(0) += 1;
         }
-        assert_eq!(levels_at.len(), 600);
+        assert_eq!(levels_at.len(), 2_000);
         let bands = levels_at[&1];
         assert!((9..=13).contains(&bands));
         assert!(levels_at.values().all(|&count| count == bands));
