@@ -271,10 +271,10 @@ fn end_gauge_of_the_guide() {
 }
 
 /// Lays the tangent to a noise-free broadened density over channels of a thousandth of a standard
-/// deviation. Returns its bias into the gap and where it touches.
+/// deviation, on a constant background. Returns its bias into the gap and where it touches.
 fn laid(density: impl Fn(f64) -> f64, reach: f64, width: f64) -> (f64, f64) {
     let energies: Vec<f64> = (-14_000..=6_000).map(|i| f64::from(i) * 1e-3).collect();
-    let values: Vec<f64> = energies.iter().map(|&e| density(e)).collect();
+    let values: Vec<f64> = energies.iter().map(|&e| 0.3 + density(e)).collect();
     let variances = vec![1e-10; energies.len()];
     let options = |side| TangentOptions { side, width, reach };
     let conduction = options(Side::Conduction);
@@ -464,4 +464,23 @@ fn metal_edge_of_empty_states_is_the_mirrored_one() {
         Side::Conduction,
     );
     assert_eq!(none, None);
+}
+
+/// `E_n` of the difference of two values whose expanded uncertainties add in quadrature.
+#[test]
+fn en_scores_follow_their_formula() {
+    for row in published("en_score.csv") {
+        let [x, expanded_x, reference, expanded_reference, en] =
+            std::array::from_fn(|field| number(&row[field]));
+        let half_width = expanded_x.hypot(expanded_reference);
+        let expanded = bandrule::schema::Expanded {
+            standard_uncertainty_ev: half_width / 2.0,
+            effective_degrees_of_freedom: None,
+            coverage_factor: 2.0,
+            expanded_uncertainty_ev: half_width,
+        };
+        let score = bandrule::compare::en_score(x - reference, &expanded).unwrap();
+        assert!((score - en).abs() < 1e-9, "{score} for {en}");
+        assert_eq!(score.abs() <= 1.0, &row[5] == "true");
+    }
 }

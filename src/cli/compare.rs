@@ -47,7 +47,7 @@ pub(super) fn run(arguments: &Arguments) -> u8 {
     };
     for folder in &folders {
         if let Err(error) = export::check_target(folder, arguments.replace) {
-            return refuse(&error.to_string());
+            return refuse(&format!("error: {error}"));
         }
     }
     let mut outcomes = Vec::new();

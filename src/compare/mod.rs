@@ -26,3 +26,4 @@ pub use study::{
     ComparisonSection, ComputedEnergies, ComputedSection, Correction, NamedFile, Protocol,
     SideSection, Stated, Study,
 };
+pub use verdict::en_score;

@@ -18,8 +18,9 @@ pub(super) struct Grounds<'a> {
     pub cautions: &'a [Caution],
 }
 
-/// The `E_n` number.
-pub(super) fn en_score(difference: f64, expanded: &Expanded) -> Option<f64> {
+/// The `E_n` number, d / U(d); `None` where there is no uncertainty.
+#[must_use]
+pub fn en_score(difference: f64, expanded: &Expanded) -> Option<f64> {
     let score = difference / expanded.expanded_uncertainty_ev;
     score.is_finite().then_some(score)
 }

@@ -83,7 +83,7 @@ fn contributions(result: &ResultDocument) -> Vec<String> {
         .filter(|(_, share)| *share > 0.0)
         .collect();
     rows.sort_by(|(_, a), (_, b)| b.total_cmp(a));
-    if rows.is_empty() {
+    if rows.is_empty() || result.difference.is_none() {
         return Vec::new();
     }
     let mut lines = vec![
@@ -194,11 +194,6 @@ mod tests {
           measured gap                            not determined
           computed gap, with corrections           3.588 ± 0.094 eV
           difference, computed - measured         not determined
-
-        Largest contributions to the uncertainty of the difference, share of variance
-          computation: starting point              0.080 eV, 43 %
-          calibration                              0.054 eV, 20 %
-          sampling of the Brillouin zone           0.045 eV, 14 %
 
         Cautions
           model-inadequate: The residuals of the conduction side keep their sign for lo…
