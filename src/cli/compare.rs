@@ -158,7 +158,11 @@ fn report(arguments: &Arguments, folders: &[PathBuf], results: &[ResultDocument]
     } else {
         for (result, folder) in results.iter().zip(folders) {
             text += &export::summary(result);
-            let tables = result.files.iter().filter(|f| f.file.ends_with(".csv")).count();
+            let tables = result
+                .files
+                .iter()
+                .filter(|f| f.file.ends_with(".csv"))
+                .count();
             // Writing to a string cannot fail.
             let _ = writeln!(
                 text,

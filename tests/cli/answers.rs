@@ -218,7 +218,10 @@ fn the_readme_shows_what_the_program_says() {
     let folder = demo();
     let output = compare(&folder, &["study.toml", "--out", "out"]);
     let said = text(&output.stdout);
-    assert!(readme.contains(said.trim_end()), "README.md should show:\n{said}");
+    assert!(
+        readme.contains(said.trim_end()),
+        "README.md should show:\n{said}"
+    );
 }
 
 /// The tables of the README's worked example are read as they stand there.
