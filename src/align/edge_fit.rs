@@ -17,6 +17,9 @@
 //! misfit shows (`spread.rs`), the fit is then brought to the solution of J' V^-1 (y - mu) = 0,
 //! V = diag(mu) + kappa C, which is the Poisson score where C is zero.
 //!
+//! For a regular grid whose plain fit is good to the noise the plain fit stays, and kappa C enters its
+//! uncertainty alone.
+//!
 //! The Fermi occupation is left out: it matters only where an edge lies within a few kT of the Fermi
 //! level.
 
@@ -287,8 +290,18 @@ impl EdgeProblem {
         let (model, jacobian) = self.model_and_derivatives(&p);
         let misfit: Vec<f64> = model.iter().zip(&self.values).map(|(m, y)| y - m).collect();
         let deviations = self.deviations(&p, levels);
-        let share = Spread::share(&misfit, &jacobian, &self.variances(&model), &deviations);
-        let mut spread = Spread::new(self.variances(&model), deviations.with_share(share));
+        let (noise, regular) = (self.variances(&model), levels.groups.are_regular());
+        let share = Spread::share(&misfit, &jacobian, &noise, &deviations, regular);
+        let plain = Spread::new(noise, deviations.clone().with_share(0.0));
+        let first = self.report(&solution, &plain, &deviations.clone().with_share(share));
+        if share == 0.0 || (regular && !first.is_inadequate()) {
+            return EdgeFit {
+                sampling_share: share,
+                ..first
+            };
+        }
+        let none = Deviations::none(model.len());
+        let mut spread = Spread::new(plain.variances, deviations.with_share(share));
         for pass in 0..2 {
             if pass > 0 {
                 let p = self.natural(&solution.parameters);
@@ -305,7 +318,7 @@ impl EdgeProblem {
         EdgeFit {
             evaluations,
             sampling_share: share,
-            ..self.report(&solution, &spread)
+            ..self.report(&solution, &spread, &none)
         }
     }
 
@@ -442,7 +455,9 @@ impl EdgeProblem {
         (model, jacobian)
     }
 
-    fn report(&self, solution: &Solution, spread: &Spread) -> EdgeFit {
+    /// The fit with its covariance. `spread` is what it was weighed by, `added` are deviations of the
+    /// model that it was not weighed by and that its uncertainty still holds.
+    fn report(&self, solution: &Solution, spread: &Spread, added: &Deviations) -> EdgeFit {
         let p = self.natural(&solution.parameters);
         let (model, jacobian) = self.model_and_derivatives(&p);
         let weighted = whiten(&spread.root, jacobian);
@@ -458,6 +473,8 @@ impl EdgeProblem {
         let reduced_chi_square = chi_square / degrees_of_freedom as f64;
         let gains = spread.gains(&cov, &weighted);
         let p = spread.unbiased(p, &cov);
+        let unweighed = added.model.tr_mul(&gains);
+        cov += unweighed.tr_mul(&unweighed);
         let inadequate = fit_probability < INADEQUATE || runs_probability < INADEQUATE;
         let inflation = if inadequate || matches!(self.noise, Noise::Variance(_)) {
             reduced_chi_square.max(1.0)
@@ -465,7 +482,17 @@ impl EdgeProblem {
             1.0
         };
         cov *= inflation;
-        let by_noise = gains.iter().zip(&spread.variances).map(|(g, v)| g * g * v);
+        let shift_gains = gains.column(0);
+        let by_noise = shift_gains
+            .iter()
+            .zip(&spread.variances)
+            .map(|(g, v)| g * g * v);
+        let weighed = spread.deviations.model.tr_mul(&shift_gains);
+        let influence = if added.model.ncols() > 0 {
+            unweighed.column(0).into_owned()
+        } else {
+            weighed
+        };
         EdgeFit {
             shift: p[0],
             amplitude: p[1],
@@ -476,9 +503,7 @@ impl EdgeProblem {
             covariance: cov,
             total_variance: self.variance_floor + p[2],
             noise_variance: by_noise.sum::<f64>() * inflation,
-            influence: (spread.deviations.model.tr_mul(&gains) * inflation.sqrt())
-                .as_slice()
-                .to_vec(),
+            influence: (influence * inflation.sqrt()).as_slice().to_vec(),
             sampling_share: 0.0,
             reduced_chi_square,
             fit_probability,

@@ -41,13 +41,15 @@ pub struct Groups {
     group: Vec<usize>,
     /// Number of groups; zero where the table names too few k-points.
     count: usize,
+    /// Whether the points are those of a regular grid.
+    regular: bool,
 }
 
 impl Groups {
     /// Deals `points` k-points into groups: one each, or nearly equal shares after a shuffle with a
-    /// fixed seed. Fewer than four points make no groups.
+    /// fixed seed. Fewer than four points make no groups. `regular` says that they are a regular grid.
     #[must_use]
-    pub fn new(points: usize) -> Self {
+    pub fn new(points: usize, regular: bool) -> Self {
         if points < 4 {
             return Self::default();
         }
@@ -60,13 +62,17 @@ impl Groups {
         for (position, point) in order.into_iter().enumerate() {
             group[point] = position % count;
         }
-        Self { group, count }
+        Self {
+            group,
+            count,
+            regular,
+        }
     }
 
-    /// Number of groups.
+    /// Whether the points are those of a regular grid.
     #[must_use]
-    pub fn count(&self) -> usize {
-        self.count
+    pub fn are_regular(&self) -> bool {
+        self.regular
     }
 }
 
@@ -94,6 +100,16 @@ pub struct Deviations {
 }
 
 impl Deviations {
+    /// No deviations, of a model of so many channels.
+    #[must_use]
+    pub fn none(channels: usize) -> Self {
+        let empty = DMatrix::zeros(channels, 0);
+        Self {
+            derivatives: [empty.clone(), empty.clone(), empty.clone(), empty.clone()],
+            model: empty,
+        }
+    }
+
     /// The same deviations where only a share of their covariance is there.
     #[must_use]
     pub fn with_share(mut self, share: f64) -> Self {
@@ -263,7 +279,7 @@ mod tests {
             gamma: 0.02,
         };
         let channels = [-0.5, 0.0, 0.5];
-        let groups = Groups::new(200);
+        let groups = Groups::new(200, false);
         let points: Vec<usize> = (0..200).collect();
         let weights = vec![1.0; 200];
         let (mut sum, mut squares, mut claimed) = (0.0, 0.0, 0.0);

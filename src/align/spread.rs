@@ -8,6 +8,7 @@
 //!   -2 ln L = ln det V + ln det(J'V^-1 J) + r'P r,   P = V^-1 - V^-1 J (J'V^-1 J)^-1 J'V^-1,
 //!
 //! weighs values from none to twice that of random points, all as probable beforehand; the mean is used.
+//! For a regular grid, whose error is small unless its lumps show, it is the most probable value.
 
 use nalgebra::{Cholesky, DMatrix, DVector, Dyn};
 
@@ -28,12 +29,13 @@ pub(super) struct Spread {
 }
 
 impl Spread {
-    /// How much of the deviations of random k-points the misfit shows: the mean of kappa.
+    /// How much of the deviations of random k-points the misfit shows.
     pub(super) fn share(
         misfit: &[f64],
         jacobian: &DMatrix<f64>,
         variances: &[f64],
         deviations: &Deviations,
+        regular: bool,
     ) -> f64 {
         if deviations.model.ncols() == 0 {
             return 0.0;
@@ -54,7 +56,12 @@ impl Spread {
                 ))
             })
             .collect();
-        mean_over(&steps)
+        if regular {
+            let best = steps.iter().min_by(|a, b| a.1.total_cmp(&b.1));
+            best.map_or(1.0, |step| step.0)
+        } else {
+            mean_over(&steps)
+        }
     }
 
     /// Adds the variances of the data, which are positive, to the covariance of the model.
@@ -88,9 +95,9 @@ impl Spread {
         bounded_step(p, cov * gradient, cov)
     }
 
-    /// How much the shift moves with each channel: the first row of (J'V^-1 J)^-1 J'V^-1.
-    pub(super) fn gains(&self, cov: &DMatrix<f64>, weighted: &DMatrix<f64>) -> DVector<f64> {
-        let mut gains = weighted * cov.column(0);
+    /// How much each parameter moves with each channel, V^-1 J (J'V^-1 J)^-1.
+    pub(super) fn gains(&self, cov: &DMatrix<f64>, weighted: &DMatrix<f64>) -> DMatrix<f64> {
+        let mut gains = weighted * cov;
         self.root
             .l_dirty()
             .tr_solve_lower_triangular_mut(&mut gains);

@@ -1,6 +1,6 @@
 //! Edges and gaps of the computed levels.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use super::error::Error;
 use super::study::{ComputedEnergies, ComputedSection};
@@ -24,6 +24,8 @@ pub(super) struct Bands {
     pub empty: SideLevels,
     /// Number of k-points; zero where the table names none.
     pub points: usize,
+    /// Whether they are a regular grid.
+    pub regular: bool,
     pub valence_edge: f64,
     pub conduction_edge: f64,
     pub record: Computed,
@@ -79,6 +81,7 @@ pub(super) fn bands(levels: &Validated<Levels>, section: &ComputedSection) -> Re
         reordered_levels: reordered(document, points.as_deref(), &occupied),
     };
     Ok(Bands {
+        regular: is_regular(document, points.as_deref()),
         occupied: split(true),
         empty: split(false),
         points: points.map_or(0, |p| p.iter().max().map_or(0, |m| m + 1)),
@@ -273,6 +276,37 @@ fn k_points(levels: &Levels) -> Option<Vec<usize>> {
             key(row).map(|key| *known.entry(key).or_insert(next))
         })
         .collect()
+}
+
+/// Whether the k-points look like a regular grid: reduced by symmetry, with weights that differ, or
+/// with few different values of each coordinate. Random points have neither.
+fn is_regular(levels: &Levels, points: Option<&[usize]>) -> bool {
+    let Some(points) = points else {
+        return false;
+    };
+    let differ = |list: &[f64]| {
+        list.iter()
+            .any(|w| (w - list[0]).abs() > 1e-6 * list[0].abs())
+    };
+    if levels.weight.as_deref().is_some_and(differ) {
+        return true;
+    }
+    let count = points.iter().max().map_or(0, |last| last + 1);
+    let coordinates: Vec<&Vec<f64>> = [&levels.k_x, &levels.k_y, &levels.k_z]
+        .into_iter()
+        .flatten()
+        .collect();
+    let few = |list: &&Vec<f64>| {
+        let values: BTreeSet<i64> = list.iter().map(|k| millionths(*k)).collect();
+        4 * values.len() <= count
+    };
+    !coordinates.is_empty() && coordinates.iter().all(few)
+}
+
+/// A coordinate as a whole number of millionths, by which rounded values are told apart.
+#[allow(clippy::cast_possible_truncation)] // Coordinates are of the order of one.
+fn millionths(coordinate: f64) -> i64 {
+    (1e6 * coordinate).round() as i64
 }
 
 /// Highest occupied and lowest empty energy for each key.

@@ -69,7 +69,7 @@ fn sides(
     bands: &Bands,
     provenance: &mut Provenance,
 ) -> Result<Vec<SideResult>, Error> {
-    let groups = Groups::new(bands.points);
+    let groups = Groups::new(bands.points, bands.regular);
     let mut results = Vec::new();
     let mut problems = Vec::new();
     for input in &inputs.sides {

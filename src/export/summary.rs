@@ -207,7 +207,7 @@ mod tests {
                 name: "alignment-ambiguous".to_owned(),
                 message: "word\n ".repeat(60),
             };
-            result.cautions = vec![caution; 9];
+            result.cautions = vec![caution; 20];
             let text = summary(&result);
             assert!(text.lines().count() <= HEIGHT, "{name}: {text}");
             assert!(

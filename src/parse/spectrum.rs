@@ -173,8 +173,12 @@ fn axis(
 
 fn missing(source: &Source, table: &Table, role: Role, what: &str, hints: &Hints) -> Problem {
     let problem = Problem::new(format!("no column is known to hold {what}"));
+    let by_header = match role {
+        Role::Energy => "`Kinetic energy (eV)`, `Binding energy (eV)` or `E - E_F (eV)`",
+        _ => "`counts`, `intensity (counts/s)` or `intensity (arb. u.)`",
+    };
     table.with_columns(source, problem).with_help(format!(
-        "say which one does, as in {}",
+        "name it in the header, as in {by_header}, or say which one does, as in {}",
         hints.setting(&format!("column.{role} = 1"))
     ))
 }

@@ -418,16 +418,13 @@ fn unreadable(text: &str, content: Content, name: &Name) -> Problem {
         format!("`{}`", visible(text))
     };
     let problem = Problem::new(format!("expected {expected}{column} and found {found}"));
-    match advice(text) {
-        Some(help) => problem.with_help(help),
-        None => problem,
-    }
+    problem.with_help(advice(text))
 }
 
-/// What to do about a text that is no number, where its form tells.
-fn advice(text: &str) -> Option<&'static str> {
+/// What to do about a text that is no number, by its form.
+fn advice(text: &str) -> &'static str {
     let digit = |c: char| c.is_ascii_digit();
-    Some(if has_decimal_comma(text) {
+    if has_decimal_comma(text) {
         "decimal commas and separators of thousands are not read: write a point where the fraction \
          begins and nothing elsewhere, in the whole file"
     } else if !text.is_empty() && text.bytes().all(|byte| byte == b'*') {
@@ -439,6 +436,7 @@ fn advice(text: &str) -> Option<&'static str> {
     } else if text.contains(digit) && text.parse().is_ok_and(f64::is_infinite) {
         "it is beyond the largest number, about 1.8e308"
     } else {
-        return None;
-    })
+        "write the number there; a row that has none may be removed on purpose, and `#` before a \
+         line makes it a comment"
+    }
 }

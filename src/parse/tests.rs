@@ -205,7 +205,10 @@ fn refusals_of_levels() {
     levels.csv:1:1: the header has 2 cells, but the rows have 3 fields separated by commas
       help: give every column one name, and separate names by two blanks or more where a name has blanks in it; where commas are decimal marks, write points
     ");
-    insta::assert_snapshot!(refused("k,E_QP (eV)\n1.5,-5\n", &hints()), @"levels.csv:2:1: expected a whole number in column `k` and found `1.5`");
+    insta::assert_snapshot!(refused("k,E_QP (eV)\n1.5,-5\n", &hints()), @r"
+    levels.csv:2:1: expected a whole number in column `k` and found `1.5`
+      help: write the number there; a row that has none may be removed on purpose, and `#` before a line makes it a comment
+    ");
     insta::assert_snapshot!(refused("# energies in Ha\nk,E_QP (eV)\n1,-5\n", &hints()), @r"
     levels.csv:2:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV)` on line 2, and as Ha by the comment on line 1
       levels.csv:1:3: the comment on line 1

@@ -117,7 +117,7 @@ fn wrong_name_of_an_axis() {
     4 | Knetic energy / eV;counts
       | ^^^^^^^^^^^^^^^^^^
       |
-      = help: say which one does, as in `column.energy = 1` under [photoemission] in study.toml
+      = help: name it in the header, as in `Kinetic energy (eV)`, `Binding energy (eV)` or `E - E_F (eV)`, or say which one does, as in `column.energy = 1` under [photoemission] in study.toml
     "#);
 }
 
@@ -248,6 +248,8 @@ fn text_among_numbers() {
       |
     9 | 16.950;sixty
       |        ^^^^^
+      |
+      = help: write the number there; a row that has none may be removed on purpose, and `#` before a line makes it a comment
     "#);
 }
 
