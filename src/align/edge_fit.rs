@@ -487,11 +487,11 @@ impl EdgeProblem {
             .iter()
             .zip(&spread.variances)
             .map(|(g, v)| g * g * v);
-        let weighed = spread.deviations.model.tr_mul(&shift_gains);
+        let by_weight = spread.deviations.model.tr_mul(&shift_gains);
         let influence = if added.model.ncols() > 0 {
             unweighed.column(0).into_owned()
         } else {
-            weighed
+            by_weight
         };
         EdgeFit {
             shift: p[0],

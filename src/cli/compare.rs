@@ -161,7 +161,7 @@ fn report(arguments: &Arguments, folders: &[PathBuf], results: &[ResultDocument]
             let tables = result
                 .files
                 .iter()
-                .filter(|f| f.file.ends_with(".csv"))
+                .filter(|f| Path::new(&f.file).extension().is_some_and(|e| e == "csv"))
                 .count();
             // Writing to a string cannot fail.
             let _ = writeln!(
