@@ -71,8 +71,8 @@ impl Spread {
             covariance[(index, index)] += variance;
         }
         let rows = variances.len();
-        // Positive by its diagonal; the identity stands in only where it holds no number, and the fit
-        // is then refused for its covariance.
+        // Positive by its diagonal. Where it holds no number no root stands in, and the fit is then
+        // refused for its covariance.
         let root = Cholesky::new(covariance).unwrap_or_else(|| {
             Cholesky::pack_dirty(DMatrix::from_diagonal_element(rows, rows, f64::NAN))
         });

@@ -14,7 +14,7 @@ use super::study::Stated;
 use crate::align::{MetalEdge, Noise, fit_metal_edge};
 use crate::check::Validated;
 use crate::parse::{Problem, Role};
-use crate::quantity::{AxisKind, Reference, Temperature};
+use crate::quantity::{AxisKind, IntensityUnit, Reference, Temperature};
 use crate::schema::{IntensityKind, Provenance, Side, Spectrum};
 
 /// How an axis becomes the common scale: energy = sign * axis + offset.
@@ -413,7 +413,7 @@ impl Curve {
                 energies,
                 values,
                 noise: Noise::Poisson,
-                unit: "counts",
+                unit: IntensityUnit::Counts.symbol(),
                 statistics: "poisson",
             },
             None => Self {
@@ -438,8 +438,9 @@ impl Curve {
 
 fn unit(kind: IntensityKind) -> &'static str {
     match kind {
-        IntensityKind::Counts => "counts",
-        IntensityKind::CountsPerSecond => "counts/s",
-        IntensityKind::Arbitrary => "arb. u.",
+        IntensityKind::Counts => IntensityUnit::Counts,
+        IntensityKind::CountsPerSecond => IntensityUnit::CountsPerSecond,
+        IntensityKind::Arbitrary => IntensityUnit::Arbitrary,
     }
+    .symbol()
 }
