@@ -130,11 +130,7 @@ fn told(findings: &[Finding]) -> String {
                 remedy,
                 ..
             } = finding;
-            let word = match severity {
-                Severity::Note => "note",
-                Severity::Warning => "warning",
-                Severity::Error => "error",
-            };
+            let word = severity.name();
             format!(
                 "{word}[{rule}]: {message}\n  --> {file}:{line}:{column}: {evidence}\n  help: {remedy}"
             )

@@ -17,6 +17,18 @@ pub enum Severity {
     Error,
 }
 
+impl Severity {
+    /// The word used in messages, options and documents.
+    #[must_use]
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Note => "note",
+            Self::Warning => "warning",
+            Self::Error => "error",
+        }
+    }
+}
+
 /// The field that a finding points at.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
 pub struct Field {

@@ -5,7 +5,7 @@ use maud::{Markup, html};
 use super::table::{Head, cell, table};
 use crate::export::words::{typeset, value};
 use crate::schema::{
-    Alternative, FitRecord, ProtocolEdge, ProtocolRecord, Quantity, ResultDocument, Severity,
+    Alternative, FitRecord, ProtocolEdge, ProtocolRecord, Quantity, ResultDocument,
 };
 
 fn shown(quantity: Option<&Quantity>) -> Markup {
@@ -137,11 +137,7 @@ pub(super) fn findings(result: &ResultDocument) -> Markup {
         .findings
         .iter()
         .map(|finding| {
-            let severity = match finding.severity {
-                Severity::Note => "note",
-                Severity::Warning => "warning",
-                Severity::Error => "error",
-            };
+            let severity = finding.severity.name();
             vec![
                 cell(finding.rule.as_str()),
                 cell(severity),
