@@ -146,9 +146,9 @@ pub(super) fn recognise(text: &str, kind: Kind) -> Option<(ConditionKey, Option<
         .filter(|word| !word.is_empty())
         .collect();
     let forms: &[Form] = match kind {
-        Kind::Levels => &COMPUTED,
-        Kind::Spectrum => &MEASURED,
-        Kind::Any => &[],
+        Kind::Levels | Kind::Density => &COMPUTED,
+        Kind::Spectrum | Kind::Dispersion => &MEASURED,
+        Kind::Gaps | Kind::Series | Kind::Any => &[],
     };
     let fits = |&&(_, needed, beside): &&Form| {
         needed.iter().all(|word| words.contains(word))

@@ -1,6 +1,7 @@
 //! The grammar of one header cell: `cell = name (unit | zero | argument)*`, where a unit stands in
 //! brackets, after `/`, after ` in `, or as the last piece (`E_QP_eV`), and a zero is written as a
-//! difference (`E - E_F`) or in words (`relative to vacuum`).
+//! difference (`E - E_F`) or in words (`relative to vacuum`). Which words make which role is said in
+//! [`super::forms`].
 
 use nom::branch::alt;
 use nom::bytes::complete::{take_till, take_till1};
@@ -10,9 +11,10 @@ use nom::multi::many0;
 use nom::sequence::{delimited, preceded};
 use nom::{IResult, Parser};
 
+use super::forms;
 use super::role::{Kind, Role};
 use super::words::{self, Relation, Tag};
-use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit, Reference};
+use crate::quantity::{AxisKind, DensityUnit, EnergyUnit, IntensityUnit, MomentumUnit, Reference};
 
 /// What a header cell says.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -27,6 +29,10 @@ pub(super) struct Reading {
     pub units: Vec<String>,
     /// Whether the name itself says that the column holds counts.
     pub counts: bool,
+    /// The words of its name, where they are the trade's.
+    pub tags: Vec<Tag>,
+    /// The name without its unit and zero.
+    pub label: String,
 }
 
 /// Reads a header cell of a table of `kind`.
@@ -110,11 +116,12 @@ fn group(text: &str, kind: Kind, name: &mut String, reading: &mut Reading) {
     for piece in text.split([',', ';']).map(str::trim) {
         let zero = words::relation(piece).filter(|(before, ..)| before.is_empty());
         let words = words::words(piece);
-        let known = !words.is_empty() && words.iter().all(|word| words::tag(word, kind).is_some());
+        let is_known = |word: &String| words::tags_of(word, kind).is_some();
+        let known = piece.contains(char::is_alphabetic) && words.iter().all(is_known);
         if matches!(piece, "" | "E" | "k" | "ε") {
             continue;
         }
-        if is_unit(piece) {
+        if is_unit(piece) || is_other_unit(piece, kind) {
             reading.units.push(piece.to_owned());
         } else if known || zero.is_some() {
             name.push(' ');
@@ -126,7 +133,26 @@ fn group(text: &str, kind: Kind, name: &mut String, reading: &mut Reading) {
     name.push(' ');
 }
 
-fn is_unit(text: &str) -> bool {
+/// Whether a text is a unit of momentum, temperature or a density of states, where there are such.
+fn is_other_unit(text: &str, kind: Kind) -> bool {
+    match kind {
+        Kind::Gaps => text == "K",
+        Kind::Dispersion => MomentumUnit::from_spelling(text).is_some(),
+        Kind::Density => DensityUnit::from_spelling(text).is_some(),
+        _ => false,
+    }
+}
+
+/// Whether a text is a unit of any quantity that a table may hold.
+pub(super) fn is_any_unit(text: &str) -> bool {
+    is_unit(text)
+        || MomentumUnit::from_spelling(text).is_some()
+        || DensityUnit::from_spelling(text).is_some()
+        || matches!(text, "K" | "V" | "s" | "deg" | "°")
+}
+
+/// Whether a text is a unit of an energy or an intensity.
+pub(super) fn is_unit(text: &str) -> bool {
     EnergyUnit::from_spelling(text).is_some() || IntensityUnit::from_spelling(text).is_some()
 }
 
@@ -135,13 +161,19 @@ fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
     let Some((name, direction)) = zero(name, reading) else {
         return;
     };
+    name.trim().clone_into(&mut reading.label);
+    if is_correction(name, kind) {
+        reading.role = Some(Role::Correction);
+        return;
+    }
     if is_formula(name, kind) {
         return;
     }
     let Some(tags) = tags(name, kind) else {
         return;
     };
-    reading.role = role(&tags, kind);
+    reading.role = forms::role(&tags, kind);
+    reading.tags.clone_from(&tags);
     reading.counts = reading.role == Some(Role::Intensity)
         && tags.contains(&Tag::Counts)
         && !tags.contains(&Tag::Rate);
@@ -212,6 +244,19 @@ fn zero<'a>(name: &'a str, reading: &mut Reading) -> Option<(&'a str, Option<Rel
     Some((name, None))
 }
 
+/// Whether a name is the difference of a quasiparticle and a mean-field energy.
+fn is_correction(name: &str, kind: Kind) -> bool {
+    let is = |part: &str, wanted: Tag| {
+        let tags = tags(part.trim(), kind).unwrap_or_default();
+        let energy = |tag: &Tag| [Tag::Energy, Tag::Plain, wanted].contains(tag);
+        tags.contains(&wanted) && tags.iter().all(energy)
+    };
+    kind == Kind::Levels
+        && name.match_indices('-').any(|(at, _)| {
+            is(&name[..at], Tag::Quasiparticle) && is(&name[at + 1..], Tag::MeanField)
+        })
+}
+
 /// Whether a name is computed with: a minus before it, a difference (`E - E_KS`), another sign (`∆E`,
 /// `%`, `√I`). It is then the name of something else.
 fn is_formula(name: &str, kind: Kind) -> bool {
@@ -236,70 +281,22 @@ fn is_formula(name: &str, kind: Kind) -> bool {
 /// the starting point of a quasiparticle energy.
 fn tags(name: &str, kind: Kind) -> Option<Vec<Tag>> {
     let read = |name: &str| -> Option<Vec<Tag>> {
-        words::words(name)
+        let tags: Option<Vec<Vec<Tag>>> = words::words(name)
             .iter()
-            .map(|word| words::tag(word, kind))
-            .collect()
+            .map(|word| words::tags_of(word, kind))
+            .collect();
+        tags.map(|tags| tags.concat())
     };
     match name.split_once('@') {
         Some((head, start)) => {
             let head = read(head)?;
-            let known = read(start)?.iter().all(|&tag| tag == Tag::MeanField);
+            let known = read(start)?
+                .iter()
+                .all(|&tag| tag == Tag::MeanField || tag == Tag::Gap);
             (known && head.contains(&Tag::Quasiparticle)).then_some(head)
         }
         None => read(name),
     }
-}
-
-/// A form of name: the role, the word it needs, and the words it may have beside it.
-type Form = (Role, Tag, &'static [Tag]);
-
-const LEVELS: [Form; 11] = [
-    (Role::KIndex, Tag::K, &[]),
-    (Role::KX, Tag::KX, &[]),
-    (Role::KY, Tag::KY, &[]),
-    (Role::KZ, Tag::KZ, &[]),
-    (Role::Weight, Tag::Weight, &[Tag::K]),
-    (Role::Band, Tag::Band, &[]),
-    (Role::Spin, Tag::Spin, &[]),
-    (Role::EnergyMeanField, Tag::MeanField, &[Tag::Energy]),
-    (
-        Role::EnergyQuasiparticle,
-        Tag::Quasiparticle,
-        &[Tag::Energy],
-    ),
-    (Role::Occupation, Tag::Occupation, &[]),
-    (Role::Energy, Tag::Energy, &[]),
-];
-
-const SPECTRUM: [Form; 8] = [
-    (Role::Energy, Tag::Energy, &[]),
-    (Role::Energy, Tag::Kinetic, &[Tag::Energy]),
-    (Role::Energy, Tag::Binding, &[Tag::Energy]),
-    (Role::Energy, Tag::FinalState, &[Tag::Energy]),
-    (Role::Energy, Tag::Photon, &[Tag::Energy]),
-    (Role::Intensity, Tag::Intensity, &[Tag::Counts, Tag::Rate]),
-    (Role::Intensity, Tag::Counts, &[Tag::Rate]),
-    (
-        Role::StandardUncertainty,
-        Tag::Uncertainty,
-        &[Tag::Intensity, Tag::Counts],
-    ),
-];
-
-fn role(tags: &[Tag], kind: Kind) -> Option<Role> {
-    let forms: &[Form] = match kind {
-        Kind::Levels => &LEVELS,
-        Kind::Spectrum => &SPECTRUM,
-        Kind::Any => &[],
-    };
-    let fits = |&&(_, needed, beside): &&Form| {
-        tags.contains(&needed)
-            && tags
-                .iter()
-                .all(|tag| *tag == needed || *tag == Tag::Plain || beside.contains(tag))
-    };
-    forms.iter().find(fits).map(|&(role, ..)| role)
 }
 
 fn axis(tags: &[Tag]) -> Option<AxisKind> {
@@ -347,6 +344,21 @@ mod tests {
             (KZ, "kz|k3"),
             (Band, "band|n|ib|nband|band index|Band"),
             (Spin, "spin|is|ispin|spin channel|spin index"),
+            (
+                Role::Correction,
+                "E_QP - E_KS|QP correction (eV)|GW-PBE|E_GW − E_HF / eV",
+            ),
+            (
+                Role::Renormalization,
+                "Z|Z factor|renormalization factor|znk",
+            ),
+            (Role::Exchange, "sigma_x (eV)|Σx|exchange|Sigma x"),
+            (Role::Correlation, "sigma_c (eV)|Re Σ_c(E) (eV)|correlation"),
+            (Role::XcPotential, "V_xc (eV)|vxc|xc potential"),
+            (Role::KDistance, "k distance|kpath|distance|k path (1/bohr)"),
+            (Role::BandEnergy, "band 1|E1|E_QP 4 (eV)|KS band 12"),
+            (Role::Projection, "Zn d|proj s|O 2p|projection (Zn 4s)"),
+            (Role::Unit, "unit|energy unit"),
         ] {
             for cell in cells.split('|') {
                 assert_eq!(levels(cell).role, Some(role), "{cell}");
@@ -355,11 +367,67 @@ mod tests {
     }
 
     #[test]
+    fn names_of_other_tables() {
+        for (kind, role, cells) in [
+            (
+                Kind::Density,
+                Role::Density,
+                "DOS (states/eV)|total|density of states|tdos",
+            ),
+            (
+                Kind::Density,
+                Role::Projection,
+                "s|p|d|f|Ga s|N 2p (1/eV)|pdos d|up|DOS down",
+            ),
+            (Kind::Density, Role::Energy, "E|E - E_F (eV)|energy (Ha)"),
+            (
+                Kind::Dispersion,
+                Role::Momentum,
+                "k|k_x (1/Å)|k parallel (Å^-1)|wave vector",
+            ),
+            (
+                Kind::Dispersion,
+                Role::Energy,
+                "E_B (eV)|E - E_F|peak energy (eV)|KE",
+            ),
+            (
+                Kind::Dispersion,
+                Role::StandardUncertainty,
+                "u(E) (eV)|sigma|error (meV)",
+            ),
+            (
+                Kind::Gaps,
+                Role::Value,
+                "gap|E_g (eV)|band gap / eV|direct gap|IP (eV)|electron affinity (eV)|G0W0@PBE (eV)|\
+                 HSE06|optical gap|Exp. gap",
+            ),
+            (Kind::Gaps, Role::Material, "material|compound|Formula"),
+            (Kind::Gaps, Role::Origin, "source|ref.|DOI"),
+            (Kind::Gaps, Role::StartingPoint, "starting point|start"),
+            (Kind::Gaps, Role::Temperature, "T (K)|temperature"),
+            (Kind::Gaps, Role::Unit, "unit"),
+            (
+                Kind::Series,
+                Role::Parameter,
+                "bands|n bands|cutoff (Ry)|k-points|k grid|plane waves",
+            ),
+            (Kind::Series, Role::Value, "gap (eV)|E_g|direct gap"),
+        ] {
+            for cell in cells.split('|') {
+                assert_eq!(read(cell, kind).role, Some(role), "{cell}");
+            }
+        }
+        assert_eq!(read("G0W0@PBE (eV)", Kind::Gaps).label, "G0W0@PBE");
+        assert_eq!(read("k_x (1/Å)", Kind::Dispersion).units, ["1/Å"]);
+        assert_eq!(read("DOS (states/eV)", Kind::Density).units, ["states/eV"]);
+        assert_eq!(spectrum("sweep 3").role, Some(Role::Sweep));
+        assert_eq!(spectrum("counts 2").role, Some(Role::Sweep));
+    }
+
+    #[test]
     fn names_that_are_not_said_in_full_have_no_role() {
         for cell in [
-            "E_QP - E_KS",
             "occ KS",
-            "QP correction (eV)",
             "E_F",
             "Ef",
             "E_K",
@@ -368,8 +436,9 @@ mod tests {
             "E below E_F",
             "foo",
             "",
-            "Z",
-            "sigma_x (eV)",
+            "s",
+            "I0",
+            "E_KS - E_QP",
             "E_QP (eV",
             "E QP raw",
             "-E_QP (eV)",

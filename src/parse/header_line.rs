@@ -2,9 +2,10 @@
 
 use std::ops::Range;
 
-use super::dialect::{self, Delimiter, Splitter};
+use super::cells::{self, Unquotable};
+use super::dialect::Delimiter;
 use super::header::{self, Reading};
-use super::layout::Layout;
+use super::layout::{Aside, Layout};
 use super::metadata;
 use super::number::number;
 use super::regroup::{self, Ungrouped};
@@ -20,6 +21,8 @@ pub(super) struct Name {
     pub span: Option<Range<usize>>,
     /// What it says.
     pub reading: Reading,
+    /// The unit that the line below the names gives it, and where.
+    pub unit: Option<Cell>,
 }
 
 impl Name {
@@ -28,39 +31,102 @@ impl Name {
             text: String::new(),
             span: None,
             reading: Reading::default(),
+            unit: None,
         }
     }
 }
 
 /// Names for the columns of a table without a header.
 pub(super) fn nameless(layout: &Layout) -> Vec<Name> {
-    vec![Name::nameless(); layout.fields]
+    vec![Name::nameless(); layout.fields()]
 }
 
 /// The names of the columns: the bare line before the numbers, or else the last comment line before
-/// them where it has a name for each column. `None` where there is no such line.
+/// them where it has a name for each column; a line of units may stand below. `None` where there is
+/// no such line.
 pub(super) fn find(
     source: &Source,
     layout: &Layout,
     kind: Kind,
     hints: &Hints,
 ) -> Result<Option<Vec<Name>>, Problem> {
-    if let Some(line) = layout.bare.last() {
-        return bare_header(source, layout, line, kind, hints).map(Some);
-    }
-    let Some(line) = comment_header(source, layout) else {
-        return Ok(None);
+    let units = units_line(source, layout);
+    let bare =
+        &layout.bare[..layout.bare.len() - usize::from(units.is_some() && !layout.bare.is_empty())];
+    let mut names = match (
+        bare.last(),
+        comment_header(source, layout, units.as_deref()),
+    ) {
+        (Some(line), _) => Some(bare_header(source, layout, line, kind, hints)?),
+        (None, Some(line)) => commented_header(source, layout, &line, kind, hints)?,
+        (None, None) => None,
     };
+    for (name, (unit, span)) in names.iter_mut().flatten().zip(units.into_iter().flatten()) {
+        name.unit = (!matches!(unit.as_str(), "" | "-" | "1")).then_some((unit, span));
+    }
+    Ok(names)
+}
+
+fn commented_header(
+    source: &Source,
+    layout: &Layout,
+    line: &Range<usize>,
+    kind: Kind,
+    hints: &Hints,
+) -> Result<Option<Vec<Name>>, Problem> {
     match cells(source, layout, line.clone(), kind) {
         Ok(cells) => {
             let names = names(cells, kind);
             Ok(holds_names(&names, kind, hints).then_some(names))
         }
         Err(Mismatch::Ambiguous(ways)) => {
-            Err(Mismatch::Ambiguous(ways).problem(source, layout, &line))
+            Err(Mismatch::Ambiguous(ways).problem(source, layout, line))
         }
         Err(_) => Ok(None),
     }
+}
+
+/// The last line before the numbers where it has a unit for each column, and another line of names
+/// stands above it.
+fn units_line(source: &Source, layout: &Layout) -> Option<Vec<Cell>> {
+    let comments = before(layout).len();
+    let line = match layout.bare.as_slice() {
+        [] if comments > 1 => before(layout)[comments - 1].span.clone(),
+        [only] if comments > 0 => only.clone(),
+        [.., last] if layout.bare.len() > 1 => last.clone(),
+        _ => return None,
+    };
+    let text = source.slice(line.clone());
+    let spans = cells::spans(text, line.start, layout.dialect.delimiter).ok()?;
+    let mut cells: Vec<Cell> = spans
+        .into_iter()
+        .map(|span| (bracketless(source.slice(span.clone())).to_owned(), span))
+        .collect();
+    while cells.len() > layout.fields() && cells.last().is_some_and(|cell| cell.0.is_empty()) {
+        cells.pop();
+    }
+    let known = cells.iter().any(|(text, _)| header::is_unit(text));
+    let all = cells
+        .iter()
+        .all(|(text, _)| matches!(text.as_str(), "" | "-" | "1") || header::is_any_unit(text));
+    (known && all && cells.len() == layout.fields()).then_some(cells)
+}
+
+fn bracketless(text: &str) -> &str {
+    let inner = text
+        .strip_prefix('(')
+        .and_then(|rest| rest.strip_suffix(')'))
+        .or_else(|| {
+            text.strip_prefix('[')
+                .and_then(|rest| rest.strip_suffix(']'))
+        });
+    inner.unwrap_or(text).trim()
+}
+
+/// The comments before the first row.
+fn before(layout: &Layout) -> &[Aside] {
+    let until = layout.comments.partition_point(|aside| aside.row == 0);
+    &layout.comments[..until]
 }
 
 /// The names in the last line before the numbers that is no comment.
@@ -73,8 +139,12 @@ fn bare_header(
 ) -> Result<Vec<Name>, Problem> {
     let names = cells(source, layout, line.clone(), kind).map(|cells| names(cells, kind));
     let own = names.as_deref().unwrap_or_default();
-    let above = layout.bare.iter().rev().skip(1).cloned();
-    let above = above.chain(comment_header(source, layout));
+    let above = layout
+        .bare
+        .iter()
+        .rev()
+        .filter(|other| other.start < line.start);
+    let above = above.cloned().chain(comment_header(source, layout, None));
     let other = naming(source, layout, above, kind).find(|(_, names)| known(names) > known(own));
     if let (Some((other, _)), false) = (other, chosen(own, hints)) {
         return Err(between(source, line, other));
@@ -107,12 +177,20 @@ pub(super) fn naming<'a>(
 }
 
 /// The last comment before the numbers that has letters and is no statement such as `axis: kinetic`.
-pub(super) fn comment_header(source: &Source, layout: &Layout) -> Option<Range<usize>> {
-    let before = &layout.comments[..layout.comments_before];
-    let line = before.iter().rev().find(|line| {
-        source
-            .slice((*line).clone())
-            .contains(char::is_alphanumeric)
+/// A line of units is passed over.
+pub(super) fn comment_header(
+    source: &Source,
+    layout: &Layout,
+    units: Option<&[Cell]>,
+) -> Option<Range<usize>> {
+    let units = units.and_then(|units| Some(units.first()?.1.start));
+    let mut lines = before(layout).iter().rev().map(|aside| &aside.span);
+    let line = lines.find(|line| {
+        let of_units = units.is_some_and(|at| line.start <= at && at < line.end);
+        !of_units
+            && source
+                .slice((*line).clone())
+                .contains(char::is_alphanumeric)
     })?;
     let text = source.slice(line.clone());
     let lower = text.to_ascii_lowercase();
@@ -145,7 +223,7 @@ fn chosen(names: &[Name], hints: &Hints) -> bool {
 }
 
 /// One cell: its text and where it stands.
-type Cell = (String, Range<usize>);
+pub(super) type Cell = (String, Range<usize>);
 
 fn names(cells: Vec<Cell>, kind: Kind) -> Vec<Name> {
     cells
@@ -154,6 +232,7 @@ fn names(cells: Vec<Cell>, kind: Kind) -> Vec<Name> {
             reading: header::read(&text, kind),
             text,
             span: Some(span),
+            unit: None,
         })
         .collect()
 }
@@ -162,17 +241,17 @@ fn names(cells: Vec<Cell>, kind: Kind) -> Vec<Name> {
 enum Mismatch {
     Count(usize),
     Ambiguous([Vec<String>; 2]),
-    Quotes(dialect::Unquotable),
+    Quotes(Unquotable),
 }
 
 impl Mismatch {
     fn problem(self, source: &Source, layout: &Layout, line: &Range<usize>) -> Problem {
-        let fields = layout.fields;
+        let fields = layout.fields();
         match self {
             Self::Quotes((span, what)) => Problem::new(what).at(source.place(span)),
             Self::Count(found) => Problem::new(format!(
                 "the header has {found} cells, but the rows have {fields} fields {}",
-                layout.delimiter.in_words()
+                layout.dialect.delimiter.in_words()
             ))
             .at(source.place(line.clone()))
             .with_help(
@@ -196,19 +275,37 @@ fn cells(
     line: Range<usize>,
     kind: Kind,
 ) -> Result<Vec<Cell>, Mismatch> {
-    if layout.delimiter != Delimiter::Blanks {
-        return delimited(source, &line, layout.delimiter, layout.fields);
+    let fields = layout.fields();
+    if layout.dialect.delimiter != Delimiter::Blanks {
+        return delimited(source, &line, layout.dialect.delimiter, fields);
     }
     for delimiter in Delimiter::CHARACTERS {
-        if layout.fields > 1
-            && let Ok(cells) = delimited(source, &line, delimiter, layout.fields)
+        if fields > 1
+            && let Ok(cells) = delimited(source, &line, delimiter, fields)
             && cells.iter().all(|(text, _)| regroup::is_closed(text))
         {
             return Ok(cells);
         }
     }
+    match grouped(source, &line, fields, kind) {
+        // Text after the numbers of every row needs no name.
+        Err(Mismatch::Count(_)) if layout.dialect.numeric.last() == Some(&false) && fields > 2 => {
+            let mut cells = grouped(source, &line, fields - 1, kind)?;
+            cells.push((String::new(), line.end..line.end));
+            Ok(cells)
+        }
+        grouped => grouped,
+    }
+}
+
+fn grouped(
+    source: &Source,
+    line: &Range<usize>,
+    fields: usize,
+    kind: Kind,
+) -> Result<Vec<Cell>, Mismatch> {
     let text = source.slice(line.clone());
-    regroup::regroup(text, layout.fields, kind)
+    regroup::regroup(text, fields, kind)
         .map(|spans| {
             let cell = |span: Range<usize>| {
                 let place = line.start + span.start..line.start + span.end;
@@ -227,22 +324,23 @@ fn cells(
         })
 }
 
-/// The cells of a line with a delimiter of one character.
+/// The cells of a line with a delimiter of one character; empty ones after the last are left away.
 fn delimited(
     source: &Source,
     line: &Range<usize>,
     delimiter: Delimiter,
     fields: usize,
 ) -> Result<Vec<Cell>, Mismatch> {
-    let spans = dialect::spans(source.slice(line.clone()), line.start, delimiter)
+    let mut spans = cells::spans(source.slice(line.clone()), line.start, delimiter)
         .map_err(Mismatch::Quotes)?;
+    while spans.len() > fields && spans.last().is_some_and(Range::is_empty) {
+        spans.pop();
+    }
     if spans.len() != fields {
         return Err(Mismatch::Count(spans.len()));
     }
-    let mut splitter = Splitter::new(source, delimiter);
-    let cells = splitter.cells(line).map_err(Mismatch::Quotes)?;
-    let texts = cells.iter().map(|text| text.trim().to_owned());
-    Ok(texts.zip(spans).collect())
+    let cell = |span: Range<usize>| (cells::text_of(source, &span).into_owned(), span);
+    Ok(spans.into_iter().map(cell).collect())
 }
 
 fn neither(source: &Source, span: Range<usize>, why: &str) -> Problem {

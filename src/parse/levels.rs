@@ -1,94 +1,289 @@
 //! Tables of computed levels.
 
+use super::blocks::{self, Numbered};
 use super::condition::set_computation;
-use super::evidence::Evidence;
-use super::parsed::{Parsed, columns, provenance, unit_note};
-use super::problem::Problems;
-use super::reference::reference;
+use super::lowering::{self, Lower, Lowering};
+use super::parsed::{Melt, Parsed};
 use super::role::{Hints, Kind, Role};
-use super::table::{Content, Table, values, whole};
-use super::unit_of_column::Units;
+use super::table::Table;
+use super::title::Counted;
+use super::words::Tag;
 use super::{Problem, Source};
-use crate::quantity::{Energy, EnergyUnit, Reference};
-use crate::schema::{Computation, Document, Levels};
-
-const ENERGIES: [Role; 2] = [Role::EnergyMeanField, Role::EnergyQuasiparticle];
+use crate::quantity::Reference;
+use crate::schema::{Computation, Document, Levels, Named, Provenance};
 
 /// Reads a table of computed levels.
 ///
 /// # Errors
 /// Everything that keeps the table from being read, up to a number worth reading.
 pub fn read_levels(source: Source, hints: &Hints) -> Result<Parsed<Levels>, Vec<Problem>> {
-    let mut problems = Problems::default();
-    let read = read(&source, hints, &mut problems);
-    match (read, problems.is_empty()) {
-        (Some((mut document, table, meaning)), true) => {
-            let notes = meaning
-                .units
-                .iter()
-                .map(|(role, unit)| (*role, unit_note(unit)));
-            let columns = columns(&table, hints, &notes.collect());
-            document.provenance = provenance(&source, &table, &columns);
-            if let Some(zero) = meaning.reference {
-                document.reference = zero.value;
-                let detail = format!("{} by {}", zero.value, zero.says);
-                document.provenance.step("reference", detail);
-            }
-            Ok(Parsed::new(document, source, columns, table))
+    super::document::read_or(source, |source| lowering::read(source, hints, false))
+}
+
+impl Lower for Levels {
+    const TABLE: Kind = Kind::Levels;
+
+    fn lower(lowering: &mut Lowering<'_>) -> Option<Self> {
+        let zero = reference(lowering);
+        let mut document = empty(lowering.rows());
+        let bands = lowering.table.many.get(&Role::BandEnergy).cloned();
+        let whole = match bands {
+            Some(fields) => path(lowering, &fields, &mut document),
+            None => energies(lowering, &mut document),
+        };
+        indices(lowering, &mut document);
+        blocks(lowering, &mut document);
+        parts(lowering, &mut document)?;
+        derive_quasiparticle(lowering, &mut document);
+        for (key, value, _) in &lowering.table.metadata.known {
+            set_computation(&mut document.computation, *key, value);
         }
-        _ => Err(problems.into_list()),
+        document.reference = zero?;
+        whole.map(|()| document)
+    }
+
+    fn provenance_mut(&mut self) -> &mut Provenance {
+        &mut self.provenance
     }
 }
 
-/// What the energies of a table mean, and who says so.
-struct Meaning {
-    reference: Option<Evidence<Reference>>,
-    units: Vec<(Role, Evidence<EnergyUnit>)>,
-}
-
-fn read(
-    source: &Source,
-    hints: &Hints,
-    problems: &mut Problems,
-) -> Option<(Levels, Table, Meaning)> {
-    let mut table = Table::open(source, Kind::Levels, hints, problems)?;
-    let bare = table.fields.remove(&Role::Energy);
-    let energies: Vec<(Role, usize)> = ENERGIES
+fn reference(lowering: &mut Lowering<'_>) -> Option<Reference> {
+    let roles = [
+        Role::EnergyMeanField,
+        Role::EnergyQuasiparticle,
+        Role::BandEnergy,
+    ];
+    let fields: Vec<usize> = roles
         .into_iter()
-        .filter_map(|role| Some((role, *table.fields.get(&role)?)))
+        .flat_map(|role| lowering.table.fields_of(role))
         .collect();
-    if energies.is_empty() {
-        problems.push(no_energy(source, &table, bare, hints));
-        return None;
-    }
-    let fields: Vec<usize> = energies.iter().map(|&(_, field)| field).collect();
-    let reference = problems.keep(reference(source, &table, &fields, hints));
-    let units = Units {
-        source,
-        table: &table,
-        hints,
-    };
-    let mut found = Vec::new();
-    for (role, field) in energies {
-        let unit = problems.keep(units.energy(role, field, None));
-        found.extend(unit.map(|unit| (role, unit)));
-    }
-    let document = document(source, &table, &found, problems);
-    let meaning = Meaning {
-        reference: reference?,
-        units: found,
-    };
-    Some((document, table, meaning))
+    lowering.reference(&fields)
 }
 
-fn no_energy(source: &Source, table: &Table, bare: Option<usize>, hints: &Hints) -> Problem {
+fn energies(lowering: &mut Lowering<'_>, document: &mut Levels) -> Option<()> {
+    let mut whole = Some(());
+    for (role, column) in [
+        (Role::EnergyMeanField, &mut document.energy_mean_field_ev),
+        (
+            Role::EnergyQuasiparticle,
+            &mut document.energy_quasiparticle_ev,
+        ),
+    ] {
+        if let Some(field) = lowering.field(role) {
+            *column = lowering.energies(role, field, None);
+            whole = whole.filter(|()| column.is_some());
+        }
+    }
+    whole
+}
+
+/// A table with a column for each band: its rows are the k-points, and each gives a level a band.
+fn path(lowering: &mut Lowering<'_>, fields: &[usize], document: &mut Levels) -> Option<()> {
+    let role = energy_of_bands(lowering, fields)?;
+    let columns = lowering.all_energies(Role::BandEnergy, None)?;
+    let (rows, bands) = (lowering.rows(), columns.len());
+    let mut energies = Vec::with_capacity(rows * bands);
+    for row in 0..rows {
+        energies.extend(columns.iter().map(|column| column[row]));
+    }
+    let number = |index: usize| {
+        let label = &lowering.table.names[fields[index]].reading.label;
+        let digits = label.trim_start_matches(|c: char| !c.is_ascii_digit());
+        digits.parse::<i64>().ok()
+    };
+    let numbers: Option<Vec<i64>> = (0..bands).map(number).collect();
+    let numbers = numbers.unwrap_or_else(|| (1..=i64::try_from(bands).unwrap_or(0)).collect());
+    document.rows = rows * bands;
+    document.band = Some((0..rows).flat_map(|_| numbers.iter().copied()).collect());
+    let k =
+        (0..rows).flat_map(|row| std::iter::repeat_n(i64::try_from(row + 1).unwrap_or(0), bands));
+    document.k_index = Some(k.collect());
+    match role {
+        Role::EnergyMeanField => document.energy_mean_field_ev = Some(energies),
+        _ => document.energy_quasiparticle_ev = Some(energies),
+    }
+    lowering.step(
+        "turn",
+        format!("{bands} columns of one band each into one level a row, as {role}"),
+    );
+    lowering.melt = Some(Melt {
+        role,
+        fields: fields.to_vec(),
+    });
+    Some(())
+}
+
+/// Whether columns of bands hold mean-field or quasiparticle energies.
+fn energy_of_bands(lowering: &mut Lowering<'_>, fields: &[usize]) -> Option<Role> {
+    let tags = |tag: Tag| {
+        let named = |field: &usize| lowering.table.names[*field].reading.tags.contains(&tag);
+        fields.iter().all(named)
+    };
+    let by_names = match (tags(Tag::MeanField), tags(Tag::Quasiparticle)) {
+        (true, false) => Some(Role::EnergyMeanField),
+        (false, true) => Some(Role::EnergyQuasiparticle),
+        _ => None,
+    };
+    let comments = lowering
+        .table
+        .metadata
+        .energy_kind
+        .as_ref()
+        .map(|kind| kind.value);
+    let role = lowering.table.bands.or(by_names).or(comments);
+    if role.is_none() {
+        let (first, last) = (fields[0] + 1, fields[fields.len() - 1] + 1);
+        let place = lowering.table.place_of(lowering.source, fields[0]);
+        lowering.problems.push(
+            Problem::new(format!(
+                "columns {first} to {last} are the energies of bands, but nothing says whether \
+                 mean-field or quasiparticle"
+            ))
+            .at(place)
+            .with_help(format!(
+                "say it in a comment, as in `# quasiparticle energies in eV`, or write {}",
+                lowering.hints.setting(&format!(
+                    "column.energy-mean-field = \"{first}-{last}\"` or \
+                     `column.energy-quasiparticle = \"{first}-{last}\""
+                ))
+            )),
+        );
+    }
+    role
+}
+
+/// Columns that say which level a row is. A row of a path stands for every band.
+fn indices(lowering: &mut Lowering<'_>, document: &mut Levels) {
+    let repeat = document.rows.checked_div(lowering.rows()).unwrap_or(1);
+    let mut number = |role: Role| {
+        lowering
+            .numbers_of(role)
+            .map(|column| repeated(column, repeat))
+    };
+    document.k_x = number(Role::KX);
+    document.k_y = number(Role::KY);
+    document.k_z = number(Role::KZ);
+    document.k_distance = number(Role::KDistance);
+    document.weight = number(Role::Weight);
+    document.occupation = number(Role::Occupation);
+    let mut whole = |role: Role| {
+        lowering
+            .whole_of(role)
+            .map(|column| repeated(column, repeat))
+    };
+    document.k_index = whole(Role::KIndex).or(document.k_index.take());
+    document.band = whole(Role::Band).or(document.band.take());
+    document.spin = whole(Role::Spin);
+}
+
+fn repeated<T: Copy>(column: Vec<T>, times: usize) -> Vec<T> {
+    match times {
+        1 => column,
+        _ => column
+            .into_iter()
+            .flat_map(|value| std::iter::repeat_n(value, times))
+            .collect(),
+    }
+}
+
+/// What the blocks of rows count, where no column does.
+fn blocks(lowering: &mut Lowering<'_>, document: &mut Levels) {
+    if document.rows != lowering.rows() {
+        return;
+    }
+    let (source, layout) = (lowering.source, &lowering.table.layout);
+    let titled = |counted| blocks::by_titles(source, layout, counted);
+    let mut notes = Vec::new();
+    let mut take = |slot: &mut Option<Vec<i64>>, counted, what: &str| {
+        let numbered = titled(counted).filter(|_| slot.is_none());
+        let Numbered {
+            numbers,
+            points,
+            line,
+        } = numbered?;
+        notes.push(format!(
+            "{what} by the titles of blocks, first on line {line}"
+        ));
+        *slot = Some(numbers);
+        points
+    };
+    let points = take(&mut document.k_index, Counted::K, "k-index");
+    take(&mut document.band, Counted::Band, "band");
+    take(&mut document.spin, Counted::Spin, "spin");
+    if let (Some([x, y, z]), None) = (points, &document.k_x) {
+        (document.k_x, document.k_y, document.k_z) = (Some(x), Some(y), Some(z));
+    }
+    let has_k =
+        document.k_index.is_some() || document.k_x.is_some() || document.k_distance.is_some();
+    let counted = match (has_k, document.band.is_some()) {
+        (true, false) => Some((&mut document.band, "band")),
+        (false, true) => Some((&mut document.k_index, "k-index")),
+        _ => None,
+    };
+    if let (Some((slot, what)), Some(numbers)) = (counted, blocks::by_blanks(layout)) {
+        let blocks = layout.breaks.len() + 1;
+        notes.push(format!(
+            "{what} by the {blocks} blocks between blank lines, counted from 1"
+        ));
+        *slot = Some(numbers);
+    }
+    notes
+        .into_iter()
+        .for_each(|note| lowering.step("number", note));
+}
+
+/// The parts of the self-energy and the shares of orbitals.
+fn parts(lowering: &mut Lowering<'_>, document: &mut Levels) -> Option<()> {
+    let mut whole = Some(());
+    for (role, column) in [
+        (Role::Correction, &mut document.correction_ev),
+        (Role::Exchange, &mut document.exchange_ev),
+        (Role::Correlation, &mut document.correlation_ev),
+        (Role::XcPotential, &mut document.xc_potential_ev),
+    ] {
+        if let Some(field) = lowering.field(role) {
+            *column = lowering.energies(role, field, None);
+            whole = whole.filter(|()| column.is_some());
+        }
+    }
+    document.renormalization = lowering.numbers_of(Role::Renormalization);
+    for field in lowering.table.fields_of(Role::Projection) {
+        document.projections.push(Named {
+            name: lowering.table.names[field].reading.label.clone(),
+            values: lowering.numbers(field),
+        });
+    }
+    whole
+}
+
+/// A mean-field energy and a correction make a quasiparticle energy.
+fn derive_quasiparticle(lowering: &mut Lowering<'_>, document: &mut Levels) {
+    if let (None, Some(start), Some(correction)) = (
+        &document.energy_quasiparticle_ev,
+        &document.energy_mean_field_ev,
+        &document.correction_ev,
+    ) {
+        let sums = start
+            .iter()
+            .zip(correction)
+            .map(|(start, correction)| start + correction);
+        document.energy_quasiparticle_ev = Some(sums.collect());
+        lowering.step(
+            "add",
+            "energy-quasiparticle = energy-mean-field + correction",
+        );
+    }
+}
+
+/// Says that no column holds energies that can be told apart.
+pub(super) fn no_energy(source: &Source, table: &Table, hints: &Hints) -> Problem {
     let which = |column: usize| {
         hints.setting(&format!(
             "column.energy-mean-field = {column}` or `column.energy-quasiparticle = {column}"
         ))
     };
-    match bare {
-        Some(field) => Problem::new(format!(
+    match table.fields.get(&Role::Energy) {
+        Some(&field) => Problem::new(format!(
             "column {} `{}` is an energy, but nothing says whether mean-field or quasiparticle",
             field + 1,
             table.names[field].text
@@ -104,75 +299,29 @@ fn no_energy(source: &Source, table: &Table, bare: Option<usize>, hints: &Hints)
     }
 }
 
-fn document(
-    source: &Source,
-    table: &Table,
-    units: &[(Role, Evidence<EnergyUnit>)],
-    problems: &mut Problems,
-) -> Levels {
-    let wanted: Vec<(Role, usize)> = table.fields.iter().map(|(&r, &f)| (r, f)).collect();
-    let fields: Vec<(usize, Content)> = wanted
-        .iter()
-        .map(|&(role, field)| (field, content(role)))
-        .collect();
-    let read = values(source, &table.layout, &table.names, &fields, problems);
-    let mut document = empty(table);
-    for ((role, _), numbers) in wanted.into_iter().zip(read) {
-        let unit = units.iter().find(|(other, _)| *other == role);
-        let unit = unit.map_or(EnergyUnit::Electronvolt, |(_, unit)| unit.value);
-        place_column(&mut document, role, numbers, unit);
-    }
-    for (key, value, _) in &table.metadata.known {
-        set_computation(&mut document.computation, *key, value);
-    }
-    document
-}
-
-fn content(role: Role) -> Content {
-    match role {
-        Role::KIndex | Role::Band => Content::Integer,
-        Role::Spin => Content::Spin,
-        _ => Content::Number,
-    }
-}
-
-fn empty(table: &Table) -> Levels {
+fn empty(rows: usize) -> Levels {
     Levels {
         schema: Levels::identifier(),
-        provenance: crate::schema::Provenance::default(),
+        provenance: Provenance::default(),
         reference: Reference::Unknown,
         computation: Computation::default(),
-        rows: table.layout.rows,
+        rows,
         k_index: None,
         k_x: None,
         k_y: None,
         k_z: None,
+        k_distance: None,
         weight: None,
         band: None,
         spin: None,
         energy_mean_field_ev: None,
         energy_quasiparticle_ev: None,
+        correction_ev: None,
+        renormalization: None,
+        exchange_ev: None,
+        correlation_ev: None,
+        xc_potential_ev: None,
         occupation: None,
-    }
-}
-
-fn place_column(document: &mut Levels, role: Role, numbers: Vec<f64>, unit: EnergyUnit) {
-    let energies = |numbers: Vec<f64>| {
-        let ev = |value| Energy::new(value, unit).electronvolts();
-        Some(numbers.into_iter().map(ev).collect())
-    };
-    match role {
-        Role::KIndex => document.k_index = Some(whole(numbers)),
-        Role::KX => document.k_x = Some(numbers),
-        Role::KY => document.k_y = Some(numbers),
-        Role::KZ => document.k_z = Some(numbers),
-        Role::Weight => document.weight = Some(numbers),
-        Role::Band => document.band = Some(whole(numbers)),
-        Role::Spin => document.spin = Some(whole(numbers)),
-        Role::Occupation => document.occupation = Some(numbers),
-        Role::EnergyMeanField => document.energy_mean_field_ev = energies(numbers),
-        Role::EnergyQuasiparticle => document.energy_quasiparticle_ev = energies(numbers),
-        // Roles of a measured curve, which `Kind::Levels` gives to no column.
-        Role::Energy | Role::Intensity | Role::StandardUncertainty => {}
+        projections: Vec::new(),
     }
 }

@@ -4,11 +4,11 @@ use std::ops::Range;
 
 use super::condition::{self, ConditionKey, Value};
 use super::evidence::Evidence;
-use super::header;
 use super::problem::Problems;
-use super::role::Kind;
+use super::role::{Kind, Role};
 use super::words::{self, Relation};
 use super::{Place, Problem, Source};
+use super::{dialect, header};
 use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit, Reference};
 
 /// One statement of a comment line.
@@ -37,6 +37,8 @@ pub(super) struct Metadata {
     pub axes: Vec<Evidence<AxisKind>>,
     /// What is said of the zero.
     pub references: Vec<Evidence<Reference>>,
+    /// Whether the energies are said to be mean-field or quasiparticle ones.
+    pub energy_kind: Option<Evidence<Role>>,
 }
 
 /// Pieces of a line beyond which it is no list of statements.
@@ -52,10 +54,16 @@ pub(super) fn read(
     let mut metadata = Metadata::default();
     for comment in comments {
         let text = source.slice(comment.clone());
-        let parts = statements(text);
+        let mut parts = statements(text);
         if parts.is_empty() {
-            if let Err(problem) = metadata.sentence(text, &source.place(comment), kind) {
-                problems.push(problem);
+            parts.extend(loose(text, kind));
+        }
+        if parts.is_empty() {
+            for sentence in text.split([',', ';']).take(MOST_PIECES) {
+                let place = source.place(dialect::span_in(text, sentence.trim(), comment.start));
+                if let Err(problem) = metadata.sentence(sentence.trim(), &place, kind) {
+                    problems.push(problem);
+                }
             }
             continue;
         }
@@ -78,6 +86,34 @@ pub(super) fn read(
 pub(super) fn is_statement(text: &str) -> bool {
     !statements(text).is_empty()
 }
+
+/// Whether a line without a colon states something that is known, as in `Sweeps,10`.
+pub(super) fn is_known(text: &str) -> bool {
+    [Kind::Levels, Kind::Spectrum]
+        .iter()
+        .any(|&kind| loose(text, kind).is_some())
+}
+
+/// A known key and its value without a sign between them, or with one that separates cells, as in
+/// `photon energy 21.218 eV` or `Dwell time (s),0.5`.
+fn loose(text: &str, kind: Kind) -> Option<(Range<usize>, Range<usize>)> {
+    let cell = text.find(['\t', ',', ';', '|']);
+    let digit = text.find(|c: char| c.is_ascii_digit() || matches!(c, '-' | '−'));
+    let cuts = [cell.map(|at| (at, at + 1)), digit.map(|at| (at, at))];
+    cuts.into_iter().flatten().find_map(|(end, start)| {
+        let (key, value) = (text[..end].trim(), text[start..].trim_matches(SEPARATORS));
+        if key.is_empty() || value.is_empty() || !key.starts_with(char::is_alphabetic) {
+            return None;
+        }
+        let (known, unit) = condition::recognise(key, kind)?;
+        // A short word may be the name of a column: its value must be one.
+        condition::read(known, value, unit.as_deref()).ok()?;
+        let at = |part: &str| dialect::span_in(text, part, 0);
+        Some((at(key), at(value)))
+    })
+}
+
+const SEPARATORS: [char; 6] = [' ', '\t', ',', ';', '|', '"'];
 
 /// The keys and values of a comment: one pair, or several separated by commas or semicolons.
 fn statements(text: &str) -> Vec<(Range<usize>, Range<usize>)> {
@@ -208,9 +244,22 @@ impl Metadata {
     /// A sentence such as `All energies are in eV relative to the Fermi level`.
     fn sentence(&mut self, text: &str, place: &Place, kind: Kind) -> Result<(), Problem> {
         let text = text.trim_end_matches('.');
-        let Some((about, rest)) = subject(text) else {
+        let Some(Subject { about, of, rest }) = subject(text) else {
             return Ok(());
         };
+        if let Some(role) = of {
+            let evidence = Evidence::at(role, Self::says(place), place.clone());
+            match &self.energy_kind {
+                Some(known) if known.value != role => {
+                    return Err(Problem::new(
+                        "the comments call the energies mean-field and quasiparticle ones",
+                    )
+                    .at(place.clone())
+                    .with_help("keep one table in a file, and say which it is"));
+                }
+                _ => self.energy_kind = Some(evidence),
+            }
+        }
         let relation = words::relation(rest);
         let rest = relation.map_or(rest, |(before, ..)| before);
         let unit = rest.trim().strip_prefix("in ").map(str::trim);
@@ -271,9 +320,17 @@ fn unit_key(key: &str) -> Option<UnitOf> {
     })
 }
 
-/// The subject of a sentence about energies or intensities, and what follows it.
-fn subject(text: &str) -> Option<(UnitOf, &str)> {
-    let mut about = None;
+/// The subject of a sentence about energies or intensities.
+struct Subject<'a> {
+    about: UnitOf,
+    /// Mean-field or quasiparticle energies.
+    of: Option<Role>,
+    /// What follows, with the blank before it, so that a relation may stand first.
+    rest: &'a str,
+}
+
+fn subject(text: &str) -> Option<Subject<'_>> {
+    let (mut about, mut of) = (None, None);
     let mut at = 0;
     for word in text.split_inclusive(' ') {
         match word.trim().to_lowercase().as_str() {
@@ -282,13 +339,22 @@ fn subject(text: &str) -> Option<(UnitOf, &str)> {
                 about = Some(UnitOf::Energy);
             }
             "intensities" | "intensity" if about.is_none() => about = Some(UnitOf::Intensity),
+            "quasiparticle" | "qp" | "gw" | "g0w0" if about.is_none() => {
+                of = Some(Role::EnergyQuasiparticle);
+            }
+            "mean-field" | "kohn-sham" | "ks" | "dft" | "hartree-fock" if about.is_none() => {
+                of = Some(Role::EnergyMeanField);
+            }
             _ => break,
         }
         at += word.len();
     }
-    // The blank before the rest stays, so that a relation may stand first.
     let start = at.saturating_sub(usize::from(text[..at].ends_with(' ')));
-    about.map(|about| (about, &text[start..]))
+    about.map(|about| Subject {
+        about,
+        of,
+        rest: &text[start..],
+    })
 }
 
 /// The axis that a text names, as `kinetic`, `binding energy` or `E - E_F`.

@@ -9,13 +9,24 @@
 // A problem carries its place and the places beside it: it is met once a run, not in a hot loop.
 #![allow(clippy::result_large_err)]
 
+mod any;
+mod blocks;
+mod cells;
 mod condition;
+mod decode;
+mod density;
 mod dialect;
+mod dispersion;
+mod document;
 mod evidence;
+mod forms;
+mod gaps;
 mod header;
 mod header_line;
 mod layout;
 mod levels;
+mod line;
+mod lowering;
 mod metadata;
 mod number;
 mod parsed;
@@ -25,10 +36,16 @@ mod quantity_text;
 mod reference;
 mod regroup;
 mod role;
+mod series;
+mod skipped;
 mod source;
 mod spectrum;
+mod standards;
+mod summary;
 mod table;
+mod title;
 mod unit_of_column;
+mod values;
 mod words;
 
 #[cfg(test)]
@@ -36,15 +53,21 @@ mod nasty_tests;
 #[cfg(test)]
 mod tests;
 
+pub use any::{AnyParsed, read_any};
 pub use condition::ConditionKey;
+pub use decode::Encoding;
+pub use dialect::Delimiter;
 pub use levels::read_levels;
 pub use metadata::Statement;
-pub use parsed::{Column, Parsed};
+pub use number::Decimal;
+pub use parsed::{Column, Manner, Parsed};
 pub use plain_table::read_columns;
 pub use problem::{Problem, render};
 pub use quantity_text::{
     energy_text, linear_energy_text, potential_text, temperature_text, time_text,
 };
-pub use role::{ColumnChoice, Hints, Role};
+pub use role::{ColumnChoice, Hints, Kind, Role, Settle};
+pub use skipped::Skipped;
 pub use source::{Place, Source};
 pub use spectrum::read_spectrum;
+pub use summary::Summary;

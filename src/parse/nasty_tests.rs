@@ -35,7 +35,7 @@ fn curves_are_refused_where_they_invite_a_misreading() {
             (
                 "KE (eV);counts\n1.0;1,234\n",
                 "2:5",
-                "separators of thousands",
+                "both cannot be decimal marks",
             ),
             ("KE (eV);counts\n1.0;1'234\n", "2:5", "found `1'234`"),
             (
@@ -45,9 +45,6 @@ fn curves_are_refused_where_they_invite_a_misreading() {
             ),
             ("KE (eV),counts\n0x10,2\n", "2:1", "found `0x10`"),
             ("KE (eV),counts\n1_000,2\n", "2:1", "found `1_000`"),
-            ("KE (eV),counts\n1,--\n", "2:3", "write `nan`"),
-            ("KE (eV),counts\n1,****\n", "2:3", "no room"),
-            ("KE (eV),counts\n−1,2\n", "2:1", "write the plain `-`"),
             ("KE (eV),counts\n1,5\0\n", "2:3", r"found `5\u{0}`"),
             // Rows.
             (
@@ -67,26 +64,11 @@ fn curves_are_refused_where_they_invite_a_misreading() {
                 "between the names and the numbers",
             ),
             (
-                "# KE (eV) counts\n−3 −4\n3 4\n",
+                "KE (eV),counts\n,,\n3,4,\n",
                 "2:1",
                 "between the names and the numbers",
             ),
-            (
-                "KE (eV),counts\n,,\n3,4,\n",
-                "2:1",
-                "neither a header nor a row",
-            ),
             ("**** ****\n3 4\n", "1:1", "it has no letter"),
-            (
-                "KE,counts\neV,1/s\n1,2\n",
-                "2:1",
-                "write a unit beside its name",
-            ),
-            (
-                "Scan 12\nKE (eV),counts\n1,2\n",
-                "1:1",
-                "2:1: these are names",
-            ),
             (
                 "#KE (eV) counts\n1 2\n#BE (eV) counts\n2 3\n",
                 "3:2",
@@ -139,11 +121,6 @@ fn levels_are_refused_where_they_invite_a_misreading() {
             ),
             ("n,E_QP (1)\n1,5\n", "1:3", "`1`"),
             ("spin,n,E_QP (eV)\nα,1,5\n", "2:1", "`up` or `down`"),
-            (
-                "n E_KS (eV) E_QP (eV)\n1 -15.0000-105.0000\n2 5 6\n",
-                "2:20",
-                "expected 3 fields",
-            ),
         ],
     );
 }
@@ -186,6 +163,24 @@ fn odd_texts_are_read_as_they_say() {
             AxisKind::Kinetic,
             Reference::Unknown,
             1.0,
+        ),
+        (
+            "KE,cps\neV,1/s\n1,2\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+        (
+            "Scan 12\nKE (eV),counts\n1,2\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            1.0,
+        ),
+        (
+            "# Energy in eV, intensity in counts\n# photon energy 21.2 eV\nK.E. I\n−1,5 2\n2,5 4\n",
+            AxisKind::Kinetic,
+            Reference::Unknown,
+            -1.5,
         ),
         (
             "# x\n\u{feff}KE (eV),counts\n\u{feff}1,2\n",

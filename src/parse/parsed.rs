@@ -4,10 +4,12 @@ use std::collections::BTreeMap;
 use std::ops::Range;
 
 use super::condition::ConditionKey;
-use super::evidence::Evidence;
+use super::decode::Encoding;
 use super::layout::Layout;
 use super::metadata::Statement;
-use super::role::{Hints, Role};
+use super::role::{Hints, Kind, Role};
+use super::skipped::{self, Skipped};
+use super::summary::Summary;
 use super::table::Table;
 use super::{Place, Source};
 use crate::schema::{Locate, Provenance};
@@ -25,6 +27,48 @@ pub struct Column {
     pub unit: Option<String>,
     /// Who says so.
     pub evidence: String,
+    /// What its numbers are like, where that was asked for.
+    pub summary: Option<Summary>,
+}
+
+/// How a text was read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Manner {
+    /// The dialect in words.
+    pub dialect: String,
+    /// The 1-based line of the names.
+    pub names_line: Option<usize>,
+    /// The number of rows of the file.
+    pub rows: usize,
+    /// How many blocks of rows blank lines make.
+    pub blocks: usize,
+    /// The first lines that were skipped.
+    pub skipped: Vec<Skipped>,
+    /// How many there are.
+    pub skipped_lines: usize,
+}
+
+/// Neighbouring columns of the file that became one of the document: its row `r` stands in row
+/// `r / fields.len()` of the file.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct Melt {
+    /// The roles whose values stand in these fields.
+    pub role: Role,
+    /// The fields, in the order of the document's rows.
+    pub fields: Vec<usize>,
+}
+
+/// Where the values of a document stand.
+#[derive(Debug, Clone, PartialEq)]
+enum Positions {
+    Table {
+        layout: Layout,
+        headers: Vec<Option<Range<usize>>>,
+        melt: Option<Melt>,
+    },
+    Curve(super::standards::Curve),
+    /// No place is known, as in a document that was read as such.
+    Nowhere,
 }
 
 /// A document, the text it was read from, and the way from the one back to the other.
@@ -38,22 +82,63 @@ pub struct Parsed<T> {
     pub columns: Vec<Column>,
     /// What its comment lines state, in order.
     pub statements: Vec<Statement>,
-    layout: Layout,
-    headers: Vec<Option<Range<usize>>>,
+    /// How it was read.
+    pub manner: Manner,
+    positions: Positions,
     known: Vec<(ConditionKey, usize)>,
 }
 
 impl<T> Parsed<T> {
-    pub(super) fn new(document: T, source: Source, columns: Vec<Column>, table: Table) -> Self {
+    /// A document from a table.
+    pub(super) fn of_table(
+        document: T,
+        source: Source,
+        columns: Vec<Column>,
+        table: Table,
+        melt: Option<Melt>,
+    ) -> Self {
+        let manner = manner(&source, &table);
         let known = table.metadata.known.iter();
         Self {
             document,
-            source,
             columns,
             known: known.map(|(key, _, index)| (*key, *index)).collect(),
             statements: table.metadata.statements,
-            layout: table.layout,
-            headers: table.names.into_iter().map(|name| name.span).collect(),
+            manner,
+            positions: Positions::Table {
+                layout: table.layout,
+                headers: table.names.into_iter().map(|name| name.span).collect(),
+                melt,
+            },
+            source,
+        }
+    }
+
+    /// A document that was read as such.
+    pub(super) fn of_document(document: T, source: Source, manner: Manner) -> Self {
+        Self {
+            document,
+            source,
+            columns: Vec::new(),
+            statements: Vec::new(),
+            manner,
+            positions: Positions::Nowhere,
+            known: Vec::new(),
+        }
+    }
+
+    /// A document from a curve of an open standard.
+    pub(super) fn of_curve(
+        document: T,
+        source: Source,
+        columns: Vec<Column>,
+        manner: Manner,
+        curve: super::standards::Curve,
+    ) -> Self {
+        Self {
+            columns,
+            positions: Positions::Curve(curve),
+            ..Self::of_document(document, source, manner)
         }
     }
 
@@ -66,11 +151,27 @@ impl<T> Parsed<T> {
             .map(|column| column.index)
     }
 
-    /// The place of a value: the row is 0-based, in file order.
+    /// The row of the file and the field of a value of the document.
+    fn position(&self, row: usize, role: Role) -> Option<(usize, usize)> {
+        let Positions::Table {
+            melt: Some(melt), ..
+        } = &self.positions
+        else {
+            return Some((row, self.field_of(role)?));
+        };
+        let columns = melt.fields.len();
+        let field = match role == melt.role {
+            true => melt.fields[row % columns],
+            false => self.field_of(role)?,
+        };
+        Some((row / columns, field))
+    }
+
+    /// The place of a value: the row is 0-based, in the order of the document.
     #[must_use]
     pub fn place_of(&self, row: usize, role: Role) -> Option<Place> {
-        let span = self.locate(row, self.field_of(role)?)?;
-        Some(self.source.place(span))
+        let (row, field) = self.position(row, role)?;
+        Some(self.source.place(self.locate(row, field)?))
     }
 
     /// The place of the header cell of a role's column.
@@ -88,40 +189,61 @@ impl<T> Parsed<T> {
     }
 }
 
+fn manner(source: &Source, table: &Table) -> Manner {
+    let dialect = &table.layout.dialect;
+    let (skipped, skipped_lines) = skipped::skipped(source, table);
+    Manner {
+        dialect: format!(
+            "{} fields {}, decimal {}",
+            dialect.fields,
+            dialect.delimiter.in_words(),
+            dialect.decimal.name()
+        ),
+        names_line: table.line,
+        rows: table.layout.rows,
+        blocks: table.layout.breaks.len() + 1,
+        skipped,
+        skipped_lines,
+    }
+}
+
 impl<T> Locate for Parsed<T> {
     fn locate(&self, row: usize, field: usize) -> Option<Range<usize>> {
-        self.layout.cell(&self.source, row, field)
+        match &self.positions {
+            Positions::Table { layout, .. } => layout.cell(&self.source, row, field),
+            Positions::Curve(curve) => curve.value_span(&self.source, row, field),
+            Positions::Nowhere => None,
+        }
     }
 
     fn locate_header(&self, field: usize) -> Option<Range<usize>> {
-        self.headers.get(field)?.clone()
+        match &self.positions {
+            Positions::Table { headers, .. } => headers.get(field)?.clone(),
+            _ => None,
+        }
     }
 }
 
-/// A unit in the file's spelling and who gives it, by role.
-pub(super) type UnitNotes = BTreeMap<Role, (String, String)>;
-
-/// A unit as a note.
-pub(super) fn unit_note<U: std::fmt::Display>(unit: &Evidence<U>) -> (String, String) {
-    (unit.value.to_string(), unit.says.clone())
-}
-
 /// Every column with its role, unit and evidence.
-pub(super) fn columns(table: &Table, hints: &Hints, units: &UnitNotes) -> Vec<Column> {
+pub(super) fn columns(
+    table: &Table,
+    hints: &Hints,
+    units: &BTreeMap<usize, (String, String)>,
+) -> Vec<Column> {
     table
         .names
         .iter()
         .enumerate()
         .map(|(index, name)| {
-            let chosen = table.fields.iter().find(|&(_, &field)| field == index);
-            let role = chosen.map(|(&role, _)| role);
-            let unit = role.and_then(|role| units.get(&role));
+            let role = table.role_of(index);
+            let unit = units.get(&index);
             Column {
                 header: name.text.clone(),
                 index,
                 role,
                 unit: unit.map(|(unit, _)| unit.clone()),
                 evidence: evidence(table, hints, index, role, unit),
+                summary: None,
             }
         })
         .collect()
@@ -146,9 +268,13 @@ fn evidence(
 }
 
 /// The record of how a table was read.
-pub(super) fn provenance(source: &Source, table: &Table, columns: &[Column]) -> Provenance {
-    let mut provenance = Provenance::default();
-    provenance.sources.push(source.record().clone());
+pub(super) fn provenance(
+    source: &Source,
+    table: &Table,
+    kind: Kind,
+    columns: &[Column],
+) -> Provenance {
+    let mut provenance = of_source(source);
     let header = match table.line {
         Some(line) => format!("names on line {line}"),
         None => "no names".to_owned(),
@@ -158,8 +284,8 @@ pub(super) fn provenance(source: &Source, table: &Table, columns: &[Column]) -> 
         format!(
             "{} rows of {} fields {}; {header}",
             table.layout.rows,
-            table.layout.fields,
-            table.layout.delimiter.in_words()
+            table.layout.fields(),
+            table.layout.dialect.delimiter.in_words()
         ),
     );
     for column in columns {
@@ -172,7 +298,7 @@ pub(super) fn provenance(source: &Source, table: &Table, columns: &[Column]) -> 
                     column.header
                 ),
             ),
-            (Some(role), Some(unit)) if is_energy(role) && unit != "eV" => provenance.step(
+            (Some(role), Some(unit)) if role.is_energy(kind) && unit != "eV" => provenance.step(
                 "convert",
                 format!(
                     "column {number} ({role}) from {unit} to eV: {}",
@@ -185,9 +311,15 @@ pub(super) fn provenance(source: &Source, table: &Table, columns: &[Column]) -> 
     provenance
 }
 
-fn is_energy(role: Role) -> bool {
-    matches!(
-        role,
-        Role::Energy | Role::EnergyMeanField | Role::EnergyQuasiparticle
-    )
+/// The record of a file, and of its encoding where that is not UTF-8.
+pub(super) fn of_source(source: &Source) -> Provenance {
+    let mut provenance = Provenance::default();
+    provenance.sources.push(source.record().clone());
+    if source.is_gzip() {
+        provenance.step("open", "gzip");
+    }
+    if !matches!(source.encoding(), Encoding::Utf8 | Encoding::Utf8Marked) {
+        provenance.step("decode", source.encoding().name());
+    }
+    provenance
 }

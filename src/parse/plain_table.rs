@@ -1,9 +1,11 @@
 //! Any table of numbers with names, as our own exports are.
 
 use super::header_line::Name;
+use super::layout::Layout;
 use super::problem::Problems;
 use super::role::{Hints, Kind};
-use super::table::{Content, Table, values};
+use super::table::Table;
+use super::values::{Content, Values, values};
 use super::{Problem, Source};
 
 /// Reads every column of a table of numbers with its header, values to their last bit. A blank cell
@@ -20,13 +22,18 @@ use super::{Problem, Source};
 /// ```
 pub fn read_columns(source: &Source) -> Result<Vec<(String, Vec<f64>)>, Vec<Problem>> {
     let mut problems = Problems::default();
-    let columns = Table::open(source, Kind::Any, &Hints::default(), &mut problems).map(|table| {
-        let wanted: Vec<_> = (0..table.layout.fields)
+    let hints = Hints::default();
+    let layout = problems.keep(Layout::of(source, &hints));
+    let table =
+        layout.and_then(|layout| Table::open(source, layout, Kind::Any, &hints, &mut problems));
+    let columns = table.map(|table| {
+        let wanted: Vec<_> = (0..table.layout.fields())
             .map(|field| (field, Content::Number))
             .collect();
         let read = values(source, &table.layout, &table.names, &wanted, &mut problems);
         let header = |name: Name| name.text;
-        table.names.into_iter().map(header).zip(read).collect()
+        let numbers = read.columns.into_iter().map(Values::numbers);
+        table.names.into_iter().map(header).zip(numbers).collect()
     });
     match (columns, problems.is_empty()) {
         (Some(columns), true) => Ok(columns),

@@ -178,6 +178,15 @@ impl Problems {
         }
     }
 
+    /// Adds what another list has.
+    pub fn append(&mut self, other: Self) {
+        self.more += other.more;
+        other
+            .list
+            .into_iter()
+            .for_each(|problem| self.push(problem));
+    }
+
     /// The value of a result; its problem is kept.
     pub fn keep<T>(&mut self, result: Result<T, Problem>) -> Option<T> {
         result.map_err(|problem| self.push(problem)).ok()

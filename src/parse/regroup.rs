@@ -5,7 +5,6 @@ use std::ops::Range;
 
 use super::header;
 use super::role::Kind;
-use crate::quantity::{EnergyUnit, IntensityUnit};
 
 /// Words that one name may have.
 const LONGEST_NAME: usize = 6;
@@ -100,7 +99,7 @@ fn glue(line: &str, words: &[Range<usize>]) -> Vec<Range<usize>> {
     for (at, word) in words.iter().enumerate() {
         let text = &line[word.clone()];
         let next = words.get(at + 1).map_or("", |next| &line[next.clone()]);
-        let joins_both = is_sign(text) || (text == "in" && is_unit(next));
+        let joins_both = is_sign(text) || (text == "in" && header::is_unit(next));
         match atoms.last_mut() {
             Some(last) if open || joins_both || joins_back(text, &line[last.clone()]) => {
                 last.end = word.end;
@@ -124,10 +123,6 @@ fn joins_back(text: &str, before: &str) -> bool {
             && ["arb.", "arb", "arbitrary"]
                 .iter()
                 .any(|arb| before.to_lowercase().ends_with(arb)))
-}
-
-fn is_unit(text: &str) -> bool {
-    EnergyUnit::from_spelling(text).is_some() || IntensityUnit::from_spelling(text).is_some()
 }
 
 /// Up to two ways to join neighbouring atoms into `wanted` cells that are each one word or a name

@@ -1,17 +1,22 @@
 //! A text with its name, and the one conversion from byte offsets to line and column.
 
-use std::fs;
-use std::io::ErrorKind;
+use std::fs::{self, File, Metadata};
+use std::io::{ErrorKind, Read};
 use std::ops::Range;
 use std::path::Path;
+use std::sync::{Arc, OnceLock};
 
+use memchr::memchr2;
 use sha2::{Digest, Sha256};
 
 use super::Problem;
+use super::decode::{Decoded, Encoding, decode, plain_text};
 use crate::schema::SourceRecord;
 
 /// Lines between two remembered line starts.
 const ANCHOR_LINES: usize = 1_000;
+/// Bytes from the beginning in which lines are counted without anchors.
+const NEAR: usize = 1 << 16;
 /// Characters of a line that an excerpt shows.
 const EXCERPT_CHARS: usize = 120;
 /// Characters shown before the span where a line is cut.
@@ -20,13 +25,22 @@ const BOM: char = '\u{feff}';
 
 /// A text that was read, with its name and the record of its bytes.
 ///
-/// Offsets are zero-based bytes of the file, a byte order mark included.
-#[derive(Debug, Clone, PartialEq)]
+/// Offsets are zero-based bytes of the text in UTF-8, a byte order mark included: those of the file
+/// itself where it is UTF-8.
+#[derive(Debug, Clone)]
 pub struct Source {
     name: String,
-    text: String,
-    record: SourceRecord,
-    anchors: Vec<usize>,
+    text: Arc<String>,
+    encoding: Encoding,
+    gzip: bool,
+    record: OnceLock<SourceRecord>,
+    anchors: OnceLock<Vec<usize>>,
+}
+
+impl PartialEq for Source {
+    fn eq(&self, other: &Self) -> bool {
+        (&self.name, &self.text) == (&other.name, &other.text) && self.record() == other.record()
+    }
 }
 
 /// A place in a text, ready to be shown.
@@ -56,57 +70,79 @@ pub(super) struct Line {
 }
 
 impl Source {
-    /// Reads a regular file of UTF-8 text, with or without a byte order mark.
+    /// Reads a regular file of text: UTF-8, UTF-16 or Latin-1, or gzip of one of them.
     ///
     /// # Errors
-    /// A file that is missing, unreadable, not regular, or not UTF-8.
+    /// A file that is missing, unreadable, not regular, or no text.
     pub fn read(path: &Path, shown: &str) -> Result<Self, Problem> {
         let name = path.display();
+        let unreadable =
+            |error: std::io::Error| Problem::new(format!("cannot read `{name}`: {error}"));
         let metadata = fs::metadata(path).map_err(|error| match error.kind() {
             ErrorKind::NotFound => Problem::new(format!("there is no file `{name}`")),
-            _ => Problem::new(format!("cannot read `{name}`: {error}")),
+            _ => unreadable(error),
         })?;
-        if !metadata.is_file() {
-            let kind = if metadata.is_dir() {
-                "a directory"
-            } else {
-                "a device, pipe or socket"
-            };
-            return Err(Problem::new(format!(
-                "`{name}` is {kind}; expected a regular file"
-            )));
-        }
-        let bytes = fs::read(path)
-            .map_err(|error| Problem::new(format!("cannot read `{name}`: {error}")))?;
+        // Asked before opening, which may wait for ever, and again of what was opened.
+        regular(path, &metadata)?;
+        let file = File::open(path).map_err(unreadable)?;
+        let metadata = file.metadata().map_err(unreadable)?;
+        regular(path, &metadata)?;
+        let size = usize::try_from(metadata.len()).unwrap_or(usize::MAX);
+        let mut bytes = Vec::new();
+        bytes.try_reserve_exact(size).map_err(|_| {
+            Problem::new(format!("`{name}` has {size} bytes: more than memory holds"))
+        })?;
+        // No more than it had when it was opened: some files have no end.
+        file.take(metadata.len())
+            .read_to_end(&mut bytes)
+            .map_err(unreadable)?;
         Self::from_bytes(shown, bytes)
     }
 
     /// A source from text in memory.
     #[must_use]
     pub fn from_text(shown: &str, text: &str) -> Self {
-        Self::new(shown, text.to_owned(), record_of(shown, text.as_bytes()))
+        Self::new(shown, Decoded::verbatim(text.to_owned()))
     }
 
-    /// A source from bytes, refused where they are not UTF-8.
-    pub(super) fn from_bytes(shown: &str, bytes: Vec<u8>) -> Result<Self, Problem> {
-        let record = record_of(shown, &bytes);
-        match String::from_utf8(bytes) {
-            Ok(text) => Ok(Self::new(shown, text, record)),
-            Err(error) => Err(not_utf8(shown, record, &error)),
+    /// A source from the bytes of a file.
+    ///
+    /// # Errors
+    /// Bytes that are no text.
+    pub fn from_bytes(shown: &str, bytes: Vec<u8>) -> Result<Self, Problem> {
+        // Made from the text where that is the bytes, and only when asked for.
+        match plain_text(bytes) {
+            Ok(text) => Ok(Self::new(shown, Decoded::verbatim(text))),
+            Err(bytes) => {
+                let record = record_of(shown, &bytes);
+                let mut source = Self::new(shown, decode(shown, bytes)?);
+                source.record = record.into();
+                Ok(source)
+            }
         }
     }
 
-    fn new(shown: &str, text: String, record: SourceRecord) -> Self {
-        let anchors = lines(&text, 0)
-            .step_by(ANCHOR_LINES)
-            .map(|line| line.start)
-            .collect();
+    fn new(shown: &str, decoded: Decoded) -> Self {
         Self {
             name: shown.to_owned(),
-            text,
-            record,
-            anchors,
+            text: Arc::new(decoded.text),
+            encoding: decoded.encoding,
+            gzip: decoded.gzip,
+            record: OnceLock::new(),
+            anchors: OnceLock::new(),
         }
+    }
+
+    /// How the file's bytes are text.
+    #[must_use]
+    pub fn encoding(&self) -> Encoding {
+        self.encoding
+    }
+
+    /// Whether the file was compressed (gzip).
+    #[must_use]
+    pub fn is_gzip(&self) -> bool {
+        self.gzip
     }
 
     /// The name to show.
@@ -124,7 +160,8 @@ impl Source {
     /// The size and hash of the raw bytes.
     #[must_use]
     pub fn record(&self) -> &SourceRecord {
-        &self.record
+        self.record
+            .get_or_init(|| record_of(&self.name, self.text.as_bytes()))
     }
 
     /// The place of a span of bytes. A span outside the text is moved to its nearest place.
@@ -156,11 +193,15 @@ impl Source {
 
     /// The number of the line that holds a byte, 1-based, and the line.
     fn line_at(&self, byte: usize) -> (usize, Line) {
-        let anchor = self
-            .anchors
+        let anchors: &[usize] = match byte {
+            // Near the beginning the lines are counted at once, before all of them are needed.
+            0..NEAR => &[0],
+            _ => self.anchors.get_or_init(|| anchors(&self.text)),
+        };
+        let anchor = anchors
             .partition_point(|&start| start <= byte)
             .saturating_sub(1);
-        let start = self.anchors.get(anchor).copied().unwrap_or(0);
+        let start = anchors.get(anchor).copied().unwrap_or(0);
         let first = Line {
             start,
             end: start,
@@ -190,21 +231,24 @@ fn record_of(shown: &str, bytes: &[u8]) -> SourceRecord {
     }
 }
 
-fn not_utf8(shown: &str, record: SourceRecord, error: &std::string::FromUtf8Error) -> Problem {
-    let at = error.utf8_error().valid_up_to();
-    let byte = error.as_bytes().get(at).copied().unwrap_or(0);
-    let wide =
-        error.as_bytes().starts_with(&[0xff, 0xfe]) || error.as_bytes().starts_with(&[0xfe, 0xff]);
-    let lossy = String::from_utf8_lossy(error.as_bytes()).into_owned();
-    let source = Source::new(shown, lossy, record);
-    let help = if wide {
-        "the file looks like UTF-16; save it as UTF-8"
+fn regular(path: &Path, metadata: &Metadata) -> Result<(), Problem> {
+    if metadata.is_file() {
+        return Ok(());
+    }
+    let kind = if metadata.is_dir() {
+        "a directory"
     } else {
-        "save the file as UTF-8; in an older one-byte encoding this may be a sign such as µ, ± or °"
+        "a device, pipe or socket"
     };
-    Problem::new(format!("the byte 0x{byte:02X} is not UTF-8 text"))
-        .at(source.place(at..at + char::REPLACEMENT_CHARACTER.len_utf8()))
-        .with_help(help)
+    let name = path.display();
+    Err(Problem::new(format!(
+        "`{name}` is {kind}; expected a regular file"
+    )))
+}
+
+fn anchors(text: &str) -> Vec<usize> {
+    let starts = lines(text, 0).map(|line| line.start);
+    starts.step_by(ANCHOR_LINES).collect()
 }
 
 /// The lines of a text from a byte that starts one; a byte order mark before one, as where files were
@@ -217,10 +261,7 @@ fn lines(text: &str, start: usize) -> impl Iterator<Item = Line> + '_ {
             at += BOM.len_utf8();
         }
         let rest = bytes.get(at..).filter(|rest| !rest.is_empty())?;
-        let length = rest
-            .iter()
-            .position(|byte| matches!(byte, b'\n' | b'\r'))
-            .unwrap_or(rest.len());
+        let length = memchr2(b'\n', b'\r', rest).unwrap_or(rest.len());
         let terminator = match &rest[length..] {
             [b'\r', b'\n', ..] => 2,
             [] => 0,
@@ -323,16 +364,6 @@ mod tests {
         let text = "x\r\n".repeat(3_500);
         let place = Source::from_text("t", &text).place(3 * 3_210..3 * 3_210 + 1);
         assert_eq!((place.line, place.column), (3_211, 1));
-    }
-
-    #[test]
-    fn bytes_that_are_not_utf8_are_located() {
-        let problem = Source::from_bytes("f.txt", b"# ok\n1 \xb5eV\n".to_vec()).unwrap_err();
-        let place = problem.place.clone().unwrap();
-        assert_eq!((place.line, place.column), (2, 3));
-        assert!(problem.message.contains("0xB5"), "{problem}");
-        let wide = Source::from_bytes("f", vec![0xff, 0xfe, b'a', 0]).unwrap_err();
-        assert!(wide.help.unwrap().contains("UTF-16"));
     }
 
     #[test]

@@ -1,196 +1,160 @@
 //! Tables of a measured curve.
 
+use super::blocks;
 use super::condition::set_condition;
-use super::evidence::{Evidence, agree};
-use super::parsed::{Parsed, UnitNotes, columns, provenance, unit_note};
-use super::problem::Problems;
-use super::reference::reference;
+use super::evidence::Evidence;
+use super::lowering::{self, Lower, Lowering};
+use super::parsed::Parsed;
 use super::role::{Hints, Kind, Role};
-use super::table::{Content, Table, values};
-use super::unit_of_column::Units;
 use super::{Problem, Source};
-use crate::quantity::{AxisKind, Energy, EnergyUnit, IntensityUnit, Reference};
+use crate::quantity::{AxisKind, IntensityUnit};
 use crate::schema::{Conditions, Document, IntensityKind, Provenance, Spectrum};
 
-/// Reads a table of a measured curve.
+/// Reads a table of a measured curve, or the one curve of a file in an open standard.
 ///
 /// # Errors
 /// Everything that keeps the table from being read, up to a number worth reading.
 pub fn read_spectrum(source: Source, hints: &Hints) -> Result<Parsed<Spectrum>, Vec<Problem>> {
-    let mut problems = Problems::default();
-    let read = read(&source, hints, &mut problems);
-    match (read, problems.is_empty()) {
-        (Some((meaning, table, [energy, intensity, uncertainty])), true) => {
-            let columns = columns(&table, hints, &meaning.notes());
-            let mut record = provenance(&source, &table, &columns);
-            meaning.record(&mut record);
-            let document = Spectrum {
-                schema: Spectrum::identifier(),
-                provenance: record,
-                axis: meaning.axis.value,
-                reference: meaning
-                    .reference
-                    .map_or(Reference::Unknown, |zero| zero.value),
-                energy_ev: to_ev(&energy, meaning.energy_unit.value),
-                intensity,
-                intensity_kind: intensity_kind(meaning.intensity_unit.value),
-                standard_uncertainty: meaning.uncertainty_unit.map(|_| uncertainty),
-                conditions: conditions(&table),
-            };
-            Ok(Parsed::new(document, source, columns, table))
+    super::document::read_or(source, |source| {
+        match super::standards::one_curve(&source, hints, false) {
+            Some(curve) => curve,
+            None => lowering::read(source, hints, false),
         }
-        _ => Err(problems.into_list()),
-    }
-}
-
-/// What the numbers of a curve mean, and who says so.
-struct Meaning {
-    axis: Evidence<AxisKind>,
-    reference: Option<Evidence<Reference>>,
-    energy_unit: Evidence<EnergyUnit>,
-    intensity_unit: Evidence<IntensityUnit>,
-    uncertainty_unit: Option<Evidence<IntensityUnit>>,
-}
-
-impl Meaning {
-    fn notes(&self) -> UnitNotes {
-        let mut notes = UnitNotes::from([
-            (Role::Energy, unit_note(&self.energy_unit)),
-            (Role::Intensity, unit_note(&self.intensity_unit)),
-        ]);
-        if let Some(unit) = &self.uncertainty_unit {
-            notes.insert(Role::StandardUncertainty, unit_note(unit));
-        }
-        notes
-    }
-
-    fn record(&self, provenance: &mut Provenance) {
-        provenance.step("axis", format!("{} by {}", self.axis.value, self.axis.says));
-        if let Some(zero) = &self.reference {
-            provenance.step("reference", format!("{} by {}", zero.value, zero.says));
-        }
-    }
-}
-
-/// The energies, the intensities and, where there are any, their uncertainties.
-type Numbers = [Vec<f64>; 3];
-
-fn read(
-    source: &Source,
-    hints: &Hints,
-    problems: &mut Problems,
-) -> Option<(Meaning, Table, Numbers)> {
-    let table = Table::open(source, Kind::Spectrum, hints, problems)?;
-    for (role, what) in [(Role::Energy, "energies"), (Role::Intensity, "intensities")] {
-        if !table.fields.contains_key(&role) {
-            problems.push(missing(source, &table, role, what, hints));
-        }
-    }
-    let energy = *table.fields.get(&Role::Energy)?;
-    let intensity = *table.fields.get(&Role::Intensity)?;
-    let uncertainty = table.fields.get(&Role::StandardUncertainty).copied();
-    let meaning = meaning(
-        source,
-        &table,
-        hints,
-        [energy, intensity],
-        uncertainty,
-        problems,
-    );
-    let wanted: Vec<(usize, Content)> = [Some(energy), Some(intensity), uncertainty]
-        .into_iter()
-        .flatten()
-        .map(|field| (field, Content::Number))
-        .collect();
-    let mut read = values(source, &table.layout, &table.names, &wanted, problems).into_iter();
-    let numbers = std::array::from_fn(|_| read.next().unwrap_or_default());
-    Some((meaning?, table, numbers))
-}
-
-/// Collects the meaning of the columns; every part is tried, so that all problems show at once.
-fn meaning(
-    source: &Source,
-    table: &Table,
-    hints: &Hints,
-    [energy, intensity]: [usize; 2],
-    uncertainty: Option<usize>,
-    problems: &mut Problems,
-) -> Option<Meaning> {
-    let units = Units {
-        source,
-        table,
-        hints,
-    };
-    let axis = problems.keep(axis(source, table, energy, hints));
-    let reference = problems.keep(reference(source, table, &[energy], hints));
-    // Without an axis every unit is let through: the missing axis is the problem to show.
-    let along = axis.as_ref().map_or(AxisKind::Photon, |axis| axis.value);
-    let energy_unit = problems.keep(units.energy(Role::Energy, energy, Some(along)));
-    let intensity_unit = problems.keep(units.intensity(intensity));
-    let uncertainty_unit = match (uncertainty, &intensity_unit) {
-        (Some(field), Some(unit)) => problems.keep(units.uncertainty(field, unit)),
-        _ => None,
-    };
-    Some(Meaning {
-        axis: axis?,
-        reference: reference?,
-        energy_unit: energy_unit?,
-        intensity_unit: intensity_unit?,
-        uncertainty_unit,
     })
 }
 
-fn axis(
-    source: &Source,
-    table: &Table,
-    field: usize,
-    hints: &Hints,
-) -> Result<Evidence<AxisKind>, Problem> {
-    let (says, place) = (table.says(field), table.place_of(source, field));
-    let mut evidence = Vec::new();
-    let header = table.names[field].reading.axis;
-    evidence.extend(header.map(|axis| Evidence::at(axis, says, place.clone())));
-    evidence.extend(table.metadata.axes.iter().cloned());
-    evidence.extend(
-        hints
-            .axis
-            .map(|axis| Evidence::setting(axis, hints.says("axis"))),
-    );
-    agree("the axis", evidence)?.ok_or_else(|| {
-        Problem::new(format!(
-            "nothing says what the energies in column {} `{}` are counted along: kinetic, binding, \
-             final-state or photon",
-            field + 1,
-            table.names[field].text
-        ))
-        .at(place)
-        .with_help(format!(
-            "name it in the header, as in `Kinetic energy (eV)`, or write {}",
-            hints.setting("axis = \"kinetic\"")
-        ))
-    })
+impl Lower for Spectrum {
+    const TABLE: Kind = Kind::Spectrum;
+
+    fn lower(lowering: &mut Lowering<'_>) -> Option<Self> {
+        let energy = lowering.field(Role::Energy)?;
+        let axis = lowering.axis(energy);
+        let reference = lowering.reference(&[energy]);
+        // Without an axis every unit is let through: the missing axis is the problem to show.
+        let along = axis.unwrap_or(AxisKind::Photon);
+        let energies = lowering.energies(Role::Energy, energy, Some(along));
+        let intensities = intensities(lowering);
+        let (unit, _) = intensities.as_ref()?;
+        let uncertainty = match lowering.field(Role::StandardUncertainty) {
+            Some(field) => Some(uncertainty(lowering, field, unit)?),
+            None => None,
+        };
+        let (unit, intensity) = intensities?;
+        let mut document = Self {
+            schema: Self::identifier(),
+            provenance: Provenance::default(),
+            axis: axis?,
+            reference: reference?,
+            energy_ev: energies?,
+            intensity,
+            intensity_kind: intensity_kind(unit.value),
+            standard_uncertainty: uncertainty,
+            conditions: conditions(lowering),
+        };
+        add_sweeps(lowering, &mut document);
+        Some(document)
+    }
+
+    fn provenance_mut(&mut self) -> &mut Provenance {
+        &mut self.provenance
+    }
 }
 
-fn missing(source: &Source, table: &Table, role: Role, what: &str, hints: &Hints) -> Problem {
-    let problem = Problem::new(format!("no column is known to hold {what}"));
-    let by_header = match role {
-        Role::Energy => "`Kinetic energy (eV)`, `Binding energy (eV)` or `E - E_F (eV)`",
-        _ => "`counts`, `intensity (counts/s)` or `intensity (arb. u.)`",
-    };
-    table.with_columns(source, problem).with_help(format!(
-        "name it in the header, as in {by_header}, or say which one does, as in {}",
-        hints.setting(&format!("column.{role} = 1"))
-    ))
-}
-
-fn to_ev(values: &[f64], unit: EnergyUnit) -> Vec<f64> {
-    values
+/// The intensities and their unit; several sweeps are added, or averaged where they are rates.
+fn intensities(lowering: &mut Lowering<'_>) -> Option<(Evidence<IntensityUnit>, Vec<f64>)> {
+    if let Some(field) = lowering.field(Role::Intensity) {
+        let unit = unit(lowering, Role::Intensity, field)?;
+        return Some((unit, lowering.numbers(field)));
+    }
+    let fields = lowering.table.fields_of(Role::Sweep);
+    let units: Vec<Option<_>> = fields
         .iter()
-        .map(|&value| Energy::new(value, unit).electronvolts())
-        .collect()
+        .map(|&field| unit(lowering, Role::Sweep, field))
+        .collect();
+    let units: Option<Vec<_>> = units.into_iter().collect();
+    let units = units?;
+    let first = units.first()?.clone();
+    if let Some(other) = units.iter().find(|unit| unit.value != first.value) {
+        let problem = Problem::new(format!(
+            "the sweeps are given in {} by {} and in {} by {}",
+            first.value, first.says, other.value, other.says
+        ));
+        lowering
+            .problems
+            .push(problem.with_help("sweeps are added in one unit"));
+        return None;
+    }
+    let columns: Vec<Vec<f64>> = fields
+        .iter()
+        .map(|&field| lowering.numbers(field))
+        .collect();
+    Some((first.clone(), together(lowering, &columns, first.value)))
 }
 
-fn intensity_kind(unit: IntensityUnit) -> IntensityKind {
+fn unit(lowering: &mut Lowering<'_>, role: Role, field: usize) -> Option<Evidence<IntensityUnit>> {
+    let found = lowering.unit_finder().intensity(role, field);
+    let unit = lowering.problems.keep(found)?;
+    lowering.note(field, &unit);
+    Some(unit)
+}
+
+fn uncertainty(
+    lowering: &mut Lowering<'_>,
+    field: usize,
+    intensity: &Evidence<IntensityUnit>,
+) -> Option<Vec<f64>> {
+    let found = lowering.unit_finder().uncertainty(field, intensity);
+    let unit = lowering.problems.keep(found)?;
+    lowering.note(field, &unit);
+    Some(lowering.numbers(field))
+}
+
+/// Counts of sweeps add up and stay counts; rates and arbitrary intensities are averaged.
+fn together(lowering: &mut Lowering<'_>, sweeps: &[Vec<f64>], unit: IntensityUnit) -> Vec<f64> {
+    let rows = sweeps.iter().map(Vec::len).min().unwrap_or(0);
+    // A number of columns.
+    #[allow(clippy::cast_precision_loss)]
+    let (what, divisor) = match unit {
+        IntensityUnit::Counts => ("added", 1.0),
+        _ => ("averaged", sweeps.len() as f64),
+    };
+    lowering.step("sweeps", format!("{} sweeps {what}", sweeps.len()));
+    let sum = |row: usize| sweeps.iter().map(|sweep| sweep[row]).sum::<f64>() / divisor;
+    (0..rows).map(sum).collect()
+}
+
+/// Adds sweeps that stand below one another in blocks with the same energies.
+fn add_sweeps(lowering: &mut Lowering<'_>, document: &mut Spectrum) {
+    let Some(length) = blocks::equal_blocks(&lowering.table.layout) else {
+        return;
+    };
+    let mut energies = document.energy_ev.chunks(length);
+    let first = energies.next().unwrap_or_default();
+    if document.standard_uncertainty.is_some() || energies.any(|block| block != first) {
+        return;
+    }
+    let sweeps: Vec<Vec<f64>> = document
+        .intensity
+        .chunks(length)
+        .map(<[f64]>::to_vec)
+        .collect();
+    let unit = match document.intensity_kind {
+        IntensityKind::Counts => IntensityUnit::Counts,
+        _ => IntensityUnit::Arbitrary,
+    };
+    document.intensity = together(lowering, &sweeps, unit);
+    document.energy_ev.truncate(length);
+    set_sweeps(&mut document.conditions, sweeps.len());
+}
+
+/// The number of sweeps, where the file does not say it.
+// A number of blocks or columns.
+#[allow(clippy::cast_precision_loss)]
+fn set_sweeps(conditions: &mut Conditions, sweeps: usize) {
+    conditions.sweeps.get_or_insert(sweeps as f64);
+}
+
+pub(super) fn intensity_kind(unit: IntensityUnit) -> IntensityKind {
     match unit {
         IntensityUnit::Counts => IntensityKind::Counts,
         IntensityUnit::CountsPerSecond => IntensityKind::CountsPerSecond,
@@ -198,10 +162,15 @@ fn intensity_kind(unit: IntensityUnit) -> IntensityKind {
     }
 }
 
-fn conditions(table: &Table) -> Conditions {
+/// What the comments say of the measurement.
+pub(super) fn conditions(lowering: &Lowering<'_>) -> Conditions {
     let mut conditions = Conditions::default();
-    for (key, value, _) in &table.metadata.known {
+    for (key, value, _) in &lowering.table.metadata.known {
         set_condition(&mut conditions, *key, value);
+    }
+    let sweeps = lowering.table.fields_of(Role::Sweep).len();
+    if sweeps > 0 {
+        set_sweeps(&mut conditions, sweeps);
     }
     conditions
 }

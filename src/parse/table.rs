@@ -1,13 +1,11 @@
 //! A table whose columns have roles, and the values in them.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::ops::Range;
 
-use super::dialect::{Delimiter, Splitter};
 use super::header_line::{self, Name};
 use super::layout::Layout;
 use super::metadata::{self, Metadata};
-use super::number::{has_decimal_comma, number};
 use super::problem::{Problems, visible};
 use super::role::{ColumnChoice, Hints, Kind, Role};
 use super::{Place, Problem, Source};
@@ -22,48 +20,51 @@ pub(super) struct Table {
     pub names: Vec<Name>,
     /// The line of the names.
     pub line: Option<usize>,
+    /// The line of their units.
+    pub units_line: Option<usize>,
     pub metadata: Metadata,
+    /// The field of each role.
     pub fields: BTreeMap<Role, usize>,
+    /// The fields of roles that several columns may have.
+    pub many: BTreeMap<Role, Vec<usize>>,
+    /// Which energy the columns of bands hold, where the user says it.
+    pub bands: Option<Role>,
 }
 
 impl Table {
     /// Reads everything but the values. `None` where a problem leaves no table.
     pub fn open(
         source: &Source,
+        layout: Layout,
         kind: Kind,
         hints: &Hints,
         problems: &mut Problems,
     ) -> Option<Self> {
-        let layout = problems.keep(Layout::of(source))?;
         let names = problems.keep(names(source, &layout, kind, hints))?;
         let header = names.iter().find_map(|name| name.span.clone());
-        let before = layout.bare.len()
-            - usize::from(
-                layout
-                    .bare
-                    .last()
-                    .is_some_and(|line| is_in(header.as_ref(), line)),
-            );
-        let mut comments: Vec<Range<usize>> = layout.bare[..before].to_vec();
-        comments.extend(
-            layout
-                .comments
-                .iter()
-                .filter(|line| !is_in(header.as_ref(), line))
-                .cloned(),
-        );
+        let units = names.iter().find_map(|name| Some(name.unit.clone()?.1));
+        let comments = layout.comments.iter().map(|aside| &aside.span);
+        let mut comments: Vec<Range<usize>> = comments
+            .chain(&layout.bare)
+            .filter(|line| !is_in(header.as_ref(), line) && !is_in(units.as_ref(), line))
+            .cloned()
+            .collect();
         comments.sort_by_key(|line| line.start);
         let metadata = metadata::read(source, comments.into_iter(), kind, problems);
         if let Some(problem) = second_header(source, &layout, &names, kind) {
             problems.push(problem);
         }
         let line = header.map(|span| source.place(span).line);
+        let units_line = units.map(|span| source.place(span).line);
         let mut table = Self {
             layout,
             names,
             line,
+            units_line,
             metadata,
             fields: BTreeMap::new(),
+            many: BTreeMap::new(),
+            bands: None,
         };
         for &role in hints.units.keys().filter(|role| !kind.has_unit(**role)) {
             let says = hints.says(&format!("unit.{role}"));
@@ -78,19 +79,63 @@ impl Table {
     /// Gives the columns that the user names their roles.
     fn choose(&mut self, source: &Source, kind: Kind, hints: &Hints, problems: &mut Problems) {
         for (&role, choice) in &hints.columns {
-            let result = if kind.roles().contains(&role) {
-                self.chosen(source, role, choice, hints)
-            } else {
-                Err(Problem::new(format!(
-                    "{}: {} has no such column",
-                    hints.says(&format!("column.{role}")),
-                    kind.in_words()
-                )))
-            };
-            if let Some(field) = problems.keep(result) {
-                self.fields.insert(role, field);
+            let says = hints.says(&format!("column.{role}"));
+            if !kind.roles().contains(&role) {
+                let what = kind.in_words();
+                problems.push(Problem::new(format!("{says}: {what} has no such column")));
+                continue;
             }
+            let chosen = match choice {
+                ColumnChoice::Range(first, last) => {
+                    self.chosen_many(source, role, *first..=*last, &says)
+                }
+                _ => self.chosen(source, role, choice, hints).map(|field| {
+                    match is_many(role, kind) {
+                        true => self.many.entry(role).or_default().push(field),
+                        false => _ = self.fields.insert(role, field),
+                    }
+                }),
+            };
+            problems.keep(chosen);
         }
+    }
+
+    /// Gives neighbouring columns a role that several may have; the two energies of levels are then
+    /// those of one band each.
+    fn chosen_many(
+        &mut self,
+        source: &Source,
+        role: Role,
+        columns: std::ops::RangeInclusive<usize>,
+        says: &str,
+    ) -> Result<(), Problem> {
+        let fields = self.layout.fields();
+        if !(1..=fields).contains(columns.start()) || !(1..=fields).contains(columns.end()) {
+            return Err(self.no_such_column(source, says, *columns.end()));
+        }
+        let of_bands = matches!(role, Role::EnergyMeanField | Role::EnergyQuasiparticle);
+        if !of_bands && !role.is_many() {
+            return Err(Problem::new(format!(
+                "{says} names several columns, but only one can be the {role}"
+            )));
+        }
+        let role = if of_bands {
+            self.bands = Some(role);
+            Role::BandEnergy
+        } else {
+            role
+        };
+        self.many
+            .insert(role, columns.map(|column| column - 1).collect());
+        Ok(())
+    }
+
+    fn no_such_column(&self, source: &Source, says: &str, column: usize) -> Problem {
+        Problem::new(format!(
+            "{says} is {column}, but `{}` has {} columns, counted from 1",
+            source.name(),
+            self.layout.fields()
+        ))
     }
 
     fn chosen(
@@ -101,32 +146,24 @@ impl Table {
         hints: &Hints,
     ) -> Result<usize, Problem> {
         let says = hints.says(&format!("column.{role}"));
-        let fields = self.layout.fields;
-        let matching: Vec<usize> = match choice {
-            ColumnChoice::Number(column) => (1..=fields)
-                .filter(|n| n == column)
-                .map(|n| n - 1)
-                .collect(),
-            ColumnChoice::Header(text) => (0..fields)
-                .filter(|&field| self.names[field].text == *text)
-                .collect(),
+        let text = match choice {
+            ColumnChoice::Header(text) => text,
+            ColumnChoice::Number(column) | ColumnChoice::Range(column, _) => {
+                return (1..=self.layout.fields())
+                    .contains(column)
+                    .then(|| column - 1)
+                    .ok_or_else(|| self.no_such_column(source, &says, *column));
+            }
         };
-        match (matching.as_slice(), choice) {
-            (&[field], _) => match self.fields.iter().find(|&(_, &other)| other == field) {
-                Some((other, _)) => Err(Problem::new(format!(
-                    "{says} and column.{other} name the same column"
-                ))),
-                None => Ok(field),
-            },
-            (_, ColumnChoice::Number(column)) => Err(Problem::new(format!(
-                "{says} is {column}, but `{}` has {fields} columns, counted from 1",
-                source.name()
-            ))),
-            ([], ColumnChoice::Header(text)) => Err(self.with_columns(
+        let named = |&field: &usize| self.names[field].text == *text;
+        let matching: Vec<usize> = (0..self.layout.fields()).filter(named).collect();
+        match matching.as_slice() {
+            &[field] => Ok(field),
+            [] => Err(self.with_columns(
                 source,
                 Problem::new(format!("{says}: no column has the header `{text}`")),
             )),
-            (_, ColumnChoice::Header(text)) => Err(self
+            _ => Err(self
                 .with_columns(
                     source,
                     Problem::new(format!(
@@ -137,17 +174,42 @@ impl Table {
         }
     }
 
+    /// The role that a field has.
+    pub fn role_of(&self, field: usize) -> Option<Role> {
+        let single = self.fields.iter().find(|&(_, &other)| other == field);
+        let many = || self.many.iter().find(|(_, fields)| fields.contains(&field));
+        single
+            .map(|(&role, _)| role)
+            .or_else(|| many().map(|(&role, _)| role))
+    }
+
+    /// The fields that have a role.
+    pub fn fields_of(&self, role: Role) -> Vec<usize> {
+        let many = self.many.get(&role).cloned();
+        many.unwrap_or_else(|| self.fields.get(&role).copied().into_iter().collect())
+    }
+
     /// Gives the columns whose header says what they are their roles, where nobody else has them.
     fn claim(&mut self, source: &Source, kind: Kind, hints: &Hints, problems: &mut Problems) {
+        self.one_role_each(hints, problems);
+        let taken: BTreeSet<usize> = self
+            .fields
+            .values()
+            .copied()
+            .chain(self.many.values().flatten().copied())
+            .collect();
         let mut claims = BTreeMap::<Role, Vec<usize>>::new();
         for (field, name) in self.names.iter().enumerate() {
-            let free = !self.fields.values().any(|&chosen| chosen == field);
-            if let (Some(role), true) = (name.reading.role, free) {
+            if let (Some(role), false) = (name.reading.role, taken.contains(&field)) {
                 claims.entry(role).or_default().push(field);
             }
         }
         for (role, claimants) in claims {
-            if self.fields.contains_key(&role) {
+            if self.fields.contains_key(&role) || self.many.contains_key(&role) {
+                continue;
+            }
+            if is_many(role, kind) {
+                self.many.insert(role, claimants);
                 continue;
             }
             // An energy of unsaid kind is no role of levels: what it means is the reader's question.
@@ -156,6 +218,33 @@ impl Table {
                 problems.push(self.rivals(source, role, [*first, *second], hints));
             }
             self.fields.insert(role, claimants[0]);
+        }
+        let energies = [Role::EnergyMeanField, Role::EnergyQuasiparticle];
+        if energies.iter().any(|role| self.fields.contains_key(role)) {
+            // Beside an energy of every level, `E1` is something else.
+            self.many.remove(&Role::BandEnergy);
+        }
+    }
+
+    /// A column that the user gives two roles.
+    fn one_role_each(&self, hints: &Hints, problems: &mut Problems) {
+        let mut roles = BTreeMap::<usize, Role>::new();
+        let many = self
+            .many
+            .iter()
+            .flat_map(|(&role, fields)| fields.iter().map(move |&f| (f, role)));
+        let chosen = self
+            .fields
+            .iter()
+            .map(|(&role, &field)| (field, role))
+            .chain(many);
+        for (field, role) in chosen {
+            if let Some(other) = roles.insert(field, role) {
+                let says = hints.says(&format!("column.{other}"));
+                problems.push(Problem::new(format!(
+                    "{says} and column.{role} name the same column"
+                )));
+            }
         }
     }
 
@@ -218,6 +307,11 @@ impl Table {
     }
 }
 
+/// Whether several columns of such a table may have a role.
+fn is_many(role: Role, kind: Kind) -> bool {
+    role.is_many() && (role, kind) != (Role::Value, Kind::Series)
+}
+
 fn is_in(span: Option<&Range<usize>>, line: &Range<usize>) -> bool {
     span.is_some_and(|span| line.start <= span.start && span.start <= line.end)
 }
@@ -242,19 +336,20 @@ fn names(
 
 /// Whether the user names every needed column by its number.
 fn numbered(kind: Kind, hints: &Hints) -> bool {
-    let by_number = |role: &Role| matches!(hints.columns.get(role), Some(ColumnChoice::Number(_)));
-    match kind {
-        Kind::Levels => [Role::EnergyMeanField, Role::EnergyQuasiparticle]
-            .iter()
-            .any(by_number),
-        Kind::Spectrum => [Role::Energy, Role::Intensity].iter().all(by_number),
-        Kind::Any => false,
-    }
+    let by_number = |role: &Role| {
+        let choice = hints.columns.get(role);
+        matches!(
+            choice,
+            Some(ColumnChoice::Number(_) | ColumnChoice::Range(..))
+        )
+    };
+    kind.needs().iter().any(|roles| roles.iter().all(by_number))
 }
 
 /// A comment among the rows that gives the columns other names: another table begins there.
 fn second_header(source: &Source, layout: &Layout, names: &[Name], kind: Kind) -> Option<Problem> {
-    let comments = layout.comments[layout.comments_before..].iter().cloned();
+    let comments = layout.comments.iter().filter(|aside| aside.row > 0);
+    let comments = comments.map(|aside| aside.span.clone());
     let differs = |other: &[Name]| {
         let mut pairs = names.iter().zip(other);
         pairs.any(|(one, other)| one.reading != other.reading)
@@ -268,9 +363,9 @@ fn second_header(source: &Source, layout: &Layout, names: &[Name], kind: Kind) -
     )
 }
 
-fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Problem {
-    let first = layout.row(source, 0).unwrap_or(0..0);
-    let (example, settings) = match kind {
+/// A header of such a table, and settings that do without one.
+fn example(kind: Kind) -> (&'static str, &'static str) {
+    match kind {
         Kind::Levels => (
             "k,band,E_KS (eV),E_QP (eV)",
             "column.energy-quasiparticle = 4",
@@ -279,8 +374,29 @@ fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Pro
             "Kinetic energy (eV),Counts",
             "column.energy = 1` and `column.intensity = 2",
         ),
+        Kind::Density => (
+            "Energy (eV),DOS (states/eV)",
+            "column.energy = 1` and `column.density = 2",
+        ),
+        Kind::Dispersion => (
+            "k (1/Å),Binding energy (eV)",
+            "column.momentum = 1` and `column.energy = 2",
+        ),
+        Kind::Gaps => (
+            "material,method,gap (eV)",
+            "column.material = 1` and `column.value = 3",
+        ),
+        Kind::Series => (
+            "bands,gap (eV)",
+            "column.parameter = 1` and `column.value = 2",
+        ),
         Kind::Any => ("energy_ev,intensity", ""),
-    };
+    }
+}
+
+fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Problem {
+    let first = layout.row(source, 0).unwrap_or(0..0);
+    let (example, settings) = example(kind);
     let mut help = format!("write a line of names above the numbers, as in `{example}`");
     if !settings.is_empty() {
         help.push_str(", or name the columns by number: ");
@@ -288,14 +404,14 @@ fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Pro
     }
     let problem = Problem::new(format!(
         "no header says what the {} columns from line {} on are",
-        layout.fields,
+        layout.fields(),
         source.place(first.clone()).line
     ))
     .at(source.place(first))
     .with_help(help);
     let rows = layout.rows(source).take(NEAR_ROWS);
     let below = header_line::naming(source, layout, rows, kind).next();
-    let (line, label) = match (header_line::comment_header(source, layout), below) {
+    let (line, label) = match (header_line::comment_header(source, layout, None), below) {
         (_, Some((line, _))) => (line, "these are names, but the lines above are no comments"),
         (Some(line), _) => (
             line,
@@ -308,135 +424,3 @@ fn no_header(source: &Source, layout: &Layout, kind: Kind, hints: &Hints) -> Pro
 
 /// Rows in which names are looked for where there are none before the numbers.
 const NEAR_ROWS: usize = 100;
-
-/// What the cells of a column hold.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub(super) enum Content {
-    /// A number; a blank cell is `NaN`.
-    Number,
-    /// A whole number.
-    Integer,
-    /// A whole number, or a direction: +1 for up, -1 for down.
-    Spin,
-}
-
-/// The values of the wanted fields, row by row.
-pub(super) fn values(
-    source: &Source,
-    layout: &Layout,
-    names: &[Name],
-    wanted: &[(usize, Content)],
-    problems: &mut Problems,
-) -> Vec<Vec<f64>> {
-    let mut columns: Vec<Vec<f64>> = wanted
-        .iter()
-        .map(|_| Vec::with_capacity(layout.rows))
-        .collect();
-    let mut splitter = Splitter::new(source, layout.delimiter);
-    for row in layout.rows(source) {
-        let cells = match splitter.cells(&row) {
-            Ok(cells) if cells.len() == layout.fields => cells,
-            Ok(cells) => {
-                problems.push_with(|| ragged(source, layout, &row, cells.len()));
-                continue;
-            }
-            Err((span, what)) => {
-                problems.push_with(|| Problem::new(what).at(source.place(span)));
-                continue;
-            }
-        };
-        for (&(field, content), column) in wanted.iter().zip(&mut columns) {
-            let text = cells.get(field).unwrap_or_default().trim();
-            match read(text, content) {
-                Some(value) => column.push(value),
-                None => problems.push_with(|| {
-                    let span = layout.spans(source, &row).into_iter().nth(field);
-                    unreadable(text, content, &names[field])
-                        .at(source.place(span.unwrap_or(row.clone())))
-                }),
-            }
-        }
-    }
-    columns
-}
-
-/// The values of one wanted column as whole numbers.
-// `values` lets only whole numbers below 2^53 through for such a column.
-#[allow(clippy::cast_possible_truncation)]
-pub(super) fn whole(values: Vec<f64>) -> Vec<i64> {
-    values.into_iter().map(|value| value as i64).collect()
-}
-
-fn read(text: &str, content: Content) -> Option<f64> {
-    const LARGEST: f64 = 9_007_199_254_740_992.0;
-    let is_whole = |value: &f64| value.fract() == 0.0 && value.abs() < LARGEST;
-    match content {
-        Content::Number if text.is_empty() => Some(f64::NAN),
-        Content::Number => number(text),
-        Content::Integer => number(text).filter(is_whole),
-        Content::Spin => match text.to_ascii_lowercase().as_str() {
-            "up" | "+" => Some(1.0),
-            "down" | "dn" | "-" => Some(-1.0),
-            _ => number(text).filter(is_whole),
-        },
-    }
-}
-
-fn ragged(source: &Source, layout: &Layout, row: &Range<usize>, found: usize) -> Problem {
-    let surplus = layout.spans(source, row).into_iter().nth(layout.fields);
-    let span = surplus.unwrap_or(row.end..row.end);
-    let help = match layout.delimiter {
-        Delimiter::Comma if found > layout.fields => {
-            "if commas are decimal marks here, write points"
-        }
-        Delimiter::Blanks if found > 1 => "a blank cell needs another delimiter, such as a comma",
-        _ => "give every row the same number of fields; a remark begins with #",
-    };
-    Problem::new(format!(
-        "expected {} fields {}, as in most rows, and found {}",
-        layout.fields,
-        layout.delimiter.in_words(),
-        found
-    ))
-    .at(source.place(span))
-    .with_help(help)
-}
-
-fn unreadable(text: &str, content: Content, name: &Name) -> Problem {
-    let expected = match content {
-        Content::Number => "a number",
-        Content::Integer => "a whole number",
-        Content::Spin => "a whole number, `up` or `down`",
-    };
-    let column = match name.text.as_str() {
-        "" => String::new(),
-        header => format!(" in column `{header}`"),
-    };
-    let found = if text.is_empty() {
-        "a blank cell".to_owned()
-    } else {
-        format!("`{}`", visible(text))
-    };
-    let problem = Problem::new(format!("expected {expected}{column} and found {found}"));
-    problem.with_help(advice(text))
-}
-
-/// What to do about a text that is no number, by its form.
-fn advice(text: &str) -> &'static str {
-    let digit = |c: char| c.is_ascii_digit();
-    if has_decimal_comma(text) {
-        "decimal commas and separators of thousands are not read: write a point where the fraction \
-         begins and nothing elsewhere, in the whole file"
-    } else if !text.is_empty() && text.bytes().all(|byte| byte == b'*') {
-        "the program that wrote the file had no room for this number"
-    } else if !text.is_empty() && text.bytes().all(|byte| byte == b'-') {
-        "where a value is missing, write `nan`"
-    } else if text.contains(['−', '–']) && text.contains(digit) {
-        "this minus is a typographic sign: write the plain `-`"
-    } else if text.contains(digit) && text.parse().is_ok_and(f64::is_infinite) {
-        "it is beyond the largest number, about 1.8e308"
-    } else {
-        "write the number there; a row that has none may be removed on purpose, and `#` before a \
-         line makes it a comment"
-    }
-}

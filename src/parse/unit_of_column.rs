@@ -3,16 +3,17 @@
 use std::fmt::Display;
 
 use super::evidence::{Evidence, agree};
-use super::role::{Hints, Role};
+use super::role::{Hints, Kind, Role};
 use super::table::Table;
-use super::{Problem, Source};
-use crate::quantity::{AxisKind, EnergyUnit, IntensityUnit};
+use super::{Place, Problem, Source};
+use crate::quantity::{AxisKind, DensityUnit, EnergyUnit, IntensityUnit, MomentumUnit};
 
 /// Where units of columns are looked for.
 #[derive(Clone, Copy)]
 pub(super) struct Units<'a> {
     pub source: &'a Source,
     pub table: &'a Table,
+    pub kind: Kind,
     pub hints: &'a Hints,
 }
 
@@ -24,8 +25,7 @@ impl Units<'_> {
         field: usize,
         axis: Option<AxisKind>,
     ) -> Result<Evidence<EnergyUnit>, Problem> {
-        let comments = self.table.metadata.energy_units.clone();
-        let found = self.unit(role, field, EnergyUnit::from_spelling, &[], comments)?;
+        let found = self.energy_if_said(role, field)?;
         let found = found.ok_or_else(|| self.missing(role, field, "eV"))?;
         if found.value.is_linear() || axis == Some(AxisKind::Photon) {
             return Ok(found);
@@ -39,12 +39,41 @@ impl Units<'_> {
         .at(self.table.place_of(self.source, field)))
     }
 
+    /// The unit of a column of energies, where anything says it.
+    pub fn energy_if_said(
+        &self,
+        role: Role,
+        field: usize,
+    ) -> Result<Option<Evidence<EnergyUnit>>, Problem> {
+        let comments = self.table.metadata.energy_units.clone();
+        self.unit(role, field, EnergyUnit::from_spelling, &[], comments)
+    }
+
+    /// The unit of a momentum, where anything says it.
+    pub fn momentum(&self, field: usize) -> Result<Option<Evidence<MomentumUnit>>, Problem> {
+        self.unit(
+            Role::Momentum,
+            field,
+            MomentumUnit::from_spelling,
+            &[],
+            Vec::new(),
+        )
+    }
+
+    /// The unit of a density of states, where anything says it.
+    pub fn density(
+        &self,
+        role: Role,
+        field: usize,
+    ) -> Result<Option<Evidence<DensityUnit>>, Problem> {
+        self.unit(role, field, DensityUnit::from_spelling, &[], Vec::new())
+    }
+
     /// The unit of the intensities; the name "counts" is evidence too.
-    pub fn intensity(&self, field: usize) -> Result<Evidence<IntensityUnit>, Problem> {
+    pub fn intensity(&self, role: Role, field: usize) -> Result<Evidence<IntensityUnit>, Problem> {
         let named = self.table.names[field].reading.counts;
         let named: &[IntensityUnit] = if named { &[IntensityUnit::Counts] } else { &[] };
         let comments = self.table.metadata.intensity_units.clone();
-        let role = Role::Intensity;
         self.unit(role, field, IntensityUnit::from_spelling, named, comments)?
             .ok_or_else(|| self.missing(role, field, "counts"))
     }
@@ -87,6 +116,12 @@ impl Units<'_> {
             let unit = read(text).ok_or_else(|| self.unknown(text, field))?;
             evidence.push(Evidence::at(unit, says.clone(), place.clone()));
         }
+        if let Some((text, span)) = &self.table.names[field].unit {
+            let place = self.source.place(span.clone());
+            let unit = read(text).ok_or_else(|| self.unknown_below(text, field, place.clone()))?;
+            let says = format!("the unit `{text}` on line {}", place.line);
+            evidence.push(Evidence::at(unit, says, place));
+        }
         for &unit in named {
             evidence.push(Evidence::at(unit, says.clone(), place.clone()));
         }
@@ -101,8 +136,8 @@ impl Units<'_> {
         role: Role,
         read: impl Fn(&str) -> Option<T>,
     ) -> Result<Option<Evidence<T>>, Problem> {
-        let general = matches!(role, Role::EnergyMeanField | Role::EnergyQuasiparticle)
-            .then_some(Role::Energy);
+        let energies = role.is_energy(self.kind) && self.kind.has_unit(Role::Energy);
+        let general = energies.then_some(Role::Energy);
         let given = [Some(role), general].into_iter().flatten();
         let mut given = given.filter_map(|role| Some((role, self.hints.units.get(&role)?)));
         let Some((role, text)) = given.next() else {
@@ -119,15 +154,24 @@ impl Units<'_> {
     }
 
     fn unknown(&self, text: &str, field: usize) -> Problem {
-        let role = self.table.fields.iter().find(|&(_, &other)| other == field);
+        let place = self.table.place_of(self.source, field);
+        self.unknown_at(text, field, &self.table.says(field), place)
+    }
+
+    fn unknown_below(&self, text: &str, field: usize, place: Place) -> Problem {
+        let says = format!("the units on line {}", place.line);
+        self.unknown_at(text, field, &says, place)
+    }
+
+    fn unknown_at(&self, text: &str, field: usize, says: &str, place: Place) -> Problem {
+        let role = self.table.role_of(field).unwrap_or(Role::Energy);
         Problem::new(format!(
-            "`{text}` in {} is not the spelling of a unit for it",
-            self.table.says(field)
+            "`{text}` in {says} is not the spelling of a unit for it"
         ))
-        .at(self.table.place_of(self.source, field))
+        .at(place)
         .with_help(format!(
             "{}; a remark goes elsewhere than in the brackets of a unit",
-            spellings(role.map_or(Role::Energy, |(&role, _)| role))
+            spellings(role)
         ))
     }
 
@@ -148,7 +192,17 @@ impl Units<'_> {
 
 fn spellings(role: Role) -> String {
     match role {
-        Role::Intensity | Role::StandardUncertainty => {
+        Role::Momentum => {
+            let all: Vec<&str> = MomentumUnit::ALL
+                .into_iter()
+                .map(MomentumUnit::symbol)
+                .collect();
+            format!("momenta are in {}", all.join(", "))
+        }
+        Role::Density | Role::Projection => {
+            "densities of states are in states/eV, states/Ha, states/Ry or arb. u.".to_owned()
+        }
+        Role::Intensity | Role::Sweep | Role::StandardUncertainty => {
             "intensities are in counts, counts/s or arb. u.".to_owned()
         }
         _ => {

@@ -15,8 +15,27 @@ pub(super) enum Tag {
     KX,
     KY,
     KZ,
+    Distance,
     Band,
     Spin,
+    Direction,
+    Correction,
+    Z,
+    Sigma,
+    SigmaX,
+    SigmaC,
+    X,
+    C,
+    Xc,
+    Vxc,
+    Exchange,
+    Correlation,
+    Potential,
+    Orbital,
+    Element,
+    Projected,
+    Total,
+    Density,
     Kinetic,
     Binding,
     FinalState,
@@ -24,7 +43,29 @@ pub(super) enum Tag {
     Intensity,
     Counts,
     Rate,
+    Sweep,
+    Peak,
     Uncertainty,
+    Material,
+    Polymorph,
+    Gap,
+    Ionisation,
+    Affinity,
+    Optical,
+    Direct,
+    Minimum,
+    Transport,
+    Excitation,
+    Method,
+    StartingPoint,
+    Temperature,
+    Experiment,
+    Origin,
+    Value,
+    Unit,
+    Parameter,
+    /// A whole number, as in `band 3`.
+    Number,
     /// Says nothing of its own, as in "index" or "of".
     Plain,
 }
@@ -86,17 +127,49 @@ fn joined_word(pair: &str) -> Option<&'static str> {
         "k y" | "k 2" => "ky",
         "k z" | "k 3" => "kz",
         "g0 w0" => "gw",
+        "k e" => "ke",
+        "b e" => "be",
+        "starting point" => "startingpoint",
+        "band gap" | "energy gap" | "e g" | "e gap" => "gap",
+        "electron affinity" => "affinity",
+        "k path" | "k distance" | "path length" => "kdistance",
+        "wave vector" => "wavevector",
+        "v xc" => "vxc",
+        "sigma x" | "σ x" => "sigmax",
+        "sigma c" | "σ c" => "sigmac",
+        "plane waves" => "planewaves",
+        "this work" => "value",
         _ => return None,
     })
 }
 
-/// What one word says in a table of `kind`; `None` where it is no word of the trade.
+/// What one word says in a table of `kind`; `None` where it is no word of the trade. A number may end
+/// a word, as in `band3`.
+pub(super) fn tags_of(word: &str, kind: Kind) -> Option<Vec<Tag>> {
+    if let Some(tag) = tag(word, kind) {
+        return Some(vec![tag]);
+    }
+    let name = word.trim_end_matches(|c: char| c.is_ascii_digit());
+    if name.len() == word.len() || word.len() - name.len() > 6 {
+        return None;
+    }
+    match name {
+        "" => Some(vec![Tag::Number]),
+        name => Some(vec![tag(name, kind)?, Tag::Number]),
+    }
+}
+
+/// What one word says without a number at its end.
 pub(super) fn tag(word: &str, kind: Kind) -> Option<Tag> {
     let lower = word.to_lowercase();
     let by_kind = match kind {
-        Kind::Levels => levels_tag(&lower),
+        Kind::Levels => levels_tag(&lower).or_else(|| share_tag(word)),
         Kind::Spectrum if word == "N" => Some(Tag::Intensity),
         Kind::Spectrum => spectrum_tag(&lower),
+        Kind::Density => density_tag(&lower).or_else(|| share_tag(word)),
+        Kind::Dispersion => dispersion_tag(&lower),
+        Kind::Gaps => gaps_tag(&lower),
+        Kind::Series => series_tag(&lower),
         Kind::Any => None,
     };
     by_kind
@@ -113,24 +186,46 @@ fn common_tag(word: &str) -> Option<Tag> {
     })
 }
 
-fn levels_tag(word: &str) -> Option<Tag> {
+/// Words for a mean field and for a quasiparticle method.
+fn theory_tag(word: &str) -> Option<Tag> {
     Some(match word {
-        "eig" | "eigs" | "eigval" | "eigenvalue" | "eigenvalues" | "eigenenergy" => Tag::Energy,
-        "ks" | "dft" | "hf" | "mf" | "lda" | "gga" | "pbe" | "pbe0" | "hse" | "hse06"
-        | "hybrid" | "meanfield" => Tag::MeanField,
+        "ks" | "dft" | "hf" | "mf" | "lda" | "gga" | "pbe" | "pbe0" | "pbesol" | "hse"
+        | "hse06" | "scan" | "hybrid" | "meanfield" => Tag::MeanField,
         "qp" | "gw" | "g0w0" | "gw0" | "evgw" | "evgw0" | "qsgw" | "scgw" | "quasiparticle" => {
             Tag::Quasiparticle
         }
+        _ => return None,
+    })
+}
+
+fn levels_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "eig" | "eigs" | "eigval" | "eigenvalue" | "eigenvalues" | "eigenenergy" => Tag::Energy,
         "f" | "occ" | "occs" | "occupation" | "occupations" | "occupancy" => Tag::Occupation,
         "w" | "wk" | "wt" | "wtk" | "weight" | "weights" => Tag::Weight,
         "k" | "ik" | "kpt" | "kpts" | "ikpt" | "kpoint" | "kindex" => Tag::K,
         "kx" | "k1" => Tag::KX,
         "ky" | "k2" => Tag::KY,
         "kz" | "k3" => Tag::KZ,
+        "kdistance" | "kdist" | "kpath" | "distance" | "path" => Tag::Distance,
         "n" | "ib" | "nb" | "bnd" | "band" | "bands" | "nband" | "iband" => Tag::Band,
         "spin" | "is" | "ispin" => Tag::Spin,
-        "i" | "point" => Tag::Plain,
-        _ => return None,
+        "correction" => Tag::Correction,
+        "z" | "znk" | "renorm" | "renormalization" | "renormalisation" => Tag::Z,
+        "sigma" | "σ" => Tag::Sigma,
+        "sigmax" | "sigx" | "σx" => Tag::SigmaX,
+        "sigmac" | "sigc" | "σc" => Tag::SigmaC,
+        "x" => Tag::X,
+        "c" => Tag::C,
+        "xc" => Tag::Xc,
+        "vxc" => Tag::Vxc,
+        "exchange" => Tag::Exchange,
+        "correlation" => Tag::Correlation,
+        "potential" => Tag::Potential,
+        "proj" | "projection" | "projected" | "character" => Tag::Projected,
+        "unit" | "units" => Tag::Unit,
+        "i" | "point" | "factor" | "part" | "self" | "re" | "real" => Tag::Plain,
+        _ => return theory_tag(word),
     })
 }
 
@@ -143,10 +238,115 @@ fn spectrum_tag(word: &str) -> Option<Tag> {
         "i" | "intensity" | "signal" => Tag::Intensity,
         "counts" | "count" => Tag::Counts,
         "rate" => Tag::Rate,
+        "sweep" | "scan" => Tag::Sweep,
+        "electron" | "photoelectron" => Tag::Plain,
+        _ => return uncertainty_tag(word),
+    })
+}
+
+fn uncertainty_tag(word: &str) -> Option<Tag> {
+    Some(match word {
         "sigma" | "σ" | "std" | "stdev" | "sd" | "uncertainty" | "error" | "err" | "u"
         | "deviation" => Tag::Uncertainty,
-        "electron" | "photoelectron" => Tag::Plain,
         _ => return None,
+    })
+}
+
+fn density_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "dos" | "density" | "states" => Tag::Density,
+        "total" | "tot" | "tdos" => Tag::Total,
+        "pdos" | "ldos" | "projected" | "proj" | "partial" | "local" => Tag::Projected,
+        "up" | "down" | "dn" => Tag::Direction,
+        "spin" => Tag::Spin,
+        "atom" | "orbital" => Tag::Plain,
+        _ => return spectrum_tag(word).filter(|tag| matches!(tag, Tag::Kinetic | Tag::Binding)),
+    })
+}
+
+/// An orbital, or the symbol of an element in its own spelling.
+fn share_tag(word: &str) -> Option<Tag> {
+    const ORBITALS: [&str; 14] = [
+        "s", "p", "d", "px", "py", "pz", "dxy", "dxz", "dyz", "dz2", "dx2", "t2g", "eg", "f",
+    ];
+    let shell = word.trim_start_matches(|c: char| c.is_ascii_digit());
+    if ORBITALS.contains(&shell) {
+        return Some(Tag::Orbital);
+    }
+    ELEMENTS
+        .split(' ')
+        .any(|symbol| symbol == word)
+        .then_some(Tag::Element)
+}
+
+/// The symbols of the elements (IUPAC), up to 103.
+const ELEMENTS: &str = "H He Li Be B C N O F Ne Na Mg Al Si P S Cl Ar K Ca Sc Ti V Cr Mn Fe Co Ni Cu \
+    Zn Ga Ge As Se Br Kr Rb Sr Y Zr Nb Mo Tc Ru Rh Pd Ag Cd In Sn Sb Te I Xe Cs Ba La Ce Pr Nd Pm Sm \
+    Eu Gd Tb Dy Ho Er Tm Yb Lu Hf Ta W Re Os Ir Pt Au Hg Tl Pb Bi Po At Rn Fr Ra Ac Th Pa U Np Pu Am \
+    Cm Bk Cf Es Fm Md No Lr";
+
+fn dispersion_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "k" | "kpar" | "kparallel" | "parallel" | "momentum" | "wavevector" => Tag::K,
+        "kx" | "ky" => Tag::KX,
+        "peak" | "position" | "maximum" => Tag::Peak,
+        _ => {
+            let tag = spectrum_tag(word)?;
+            let energy = matches!(
+                tag,
+                Tag::Kinetic | Tag::Binding | Tag::FinalState | Tag::Uncertainty
+            );
+            return energy.then_some(tag);
+        }
+    })
+}
+
+/// Words for a gap, an ionisation energy or an affinity.
+fn value_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "gap" | "gaps" | "eg" | "egap" | "bandgap" => Tag::Gap,
+        "ip" | "ie" | "ionisation" | "ionization" => Tag::Ionisation,
+        "ea" | "affinity" => Tag::Affinity,
+        "potential" => Tag::Potential,
+        "optical" | "exciton" | "excitonic" => Tag::Optical,
+        "direct" => Tag::Direct,
+        "minimum" | "min" | "indirect" | "fundamental" | "smallest" => Tag::Minimum,
+        "transport" | "photoemission" => Tag::Transport,
+        "value" => Tag::Value,
+        "unit" | "units" => Tag::Unit,
+        "exp" | "expt" | "experiment" | "experimental" | "measured" | "measurement" => {
+            Tag::Experiment
+        }
+        _ => return uncertainty_tag(word).or_else(|| theory_tag(word)),
+    })
+}
+
+fn gaps_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "material" | "compound" | "formula" | "solid" | "crystal" | "substance" => Tag::Material,
+        "polymorph" | "phase" | "structure" | "prototype" => Tag::Polymorph,
+        "method" | "functional" | "approach" | "theory" | "technique" => Tag::Method,
+        "start" | "startingpoint" => Tag::StartingPoint,
+        "temperature" | "t" => Tag::Temperature,
+        "source" | "reference" | "ref" | "citation" | "doi" => Tag::Origin,
+        "excitation" | "kind" | "type" => Tag::Excitation,
+        "momentum" | "transition" | "k" | "kpoint" => Tag::K,
+        "point" | "energy" | "chemical" => Tag::Plain,
+        _ => return value_tag(word),
+    })
+}
+
+fn series_tag(word: &str) -> Option<Tag> {
+    Some(match word {
+        "cutoff" | "ecut" | "planewaves" | "npw" | "frequencies" | "nfreq" | "nω" | "points"
+        | "nodes" | "basis" | "size" | "empty" | "states" | "grid" | "mesh" | "screening" | "g" => {
+            Tag::Parameter
+        }
+        "bands" | "band" | "nband" | "nbands" | "n" | "nb" => Tag::Band,
+        "k" | "kpoints" | "kpoint" | "nk" | "kgrid" => Tag::K,
+        "correction" => Tag::Correction,
+        "point" | "functions" => Tag::Plain,
+        _ => return value_tag(word).filter(|tag| *tag != Tag::MeanField),
     })
 }
 
@@ -155,8 +355,8 @@ fn energy_of(word: &str, kind: Kind) -> Option<Tag> {
     let rest = word.strip_prefix('e')?;
     let tag = match kind {
         Kind::Levels => levels_tag(rest),
-        Kind::Spectrum => spectrum_tag(rest),
-        Kind::Any => None,
+        Kind::Spectrum | Kind::Density | Kind::Dispersion => spectrum_tag(rest),
+        Kind::Gaps | Kind::Series | Kind::Any => None,
     };
     tag.filter(|tag| matches!(tag, Tag::MeanField | Tag::Quasiparticle | Tag::Kinetic))
 }

@@ -9,10 +9,12 @@ pub mod constants;
 
 mod axis;
 mod energy;
+mod other_units;
 mod rounding;
 mod unit;
 
 pub use axis::{AxisKind, Reference};
 pub use energy::{Energy, Temperature};
+pub use other_units::{DensityUnit, MomentumUnit};
 pub use rounding::{decimals_for, rounded, with_uncertainty};
 pub use unit::{EnergyUnit, IntensityUnit};

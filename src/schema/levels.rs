@@ -3,7 +3,7 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::{Document, Provenance, number};
+use super::{Document, Named, Provenance, number};
 use crate::quantity::Reference;
 
 /// What is known of the computation itself.
@@ -47,6 +47,10 @@ pub struct Levels {
     #[serde(with = "number::optional_array", default)]
     #[schemars(with = "Option<Vec<number::Real>>")]
     pub k_z: Option<Vec<f64>>,
+    /// Length along a path of k-points, in the file's own unit.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub k_distance: Option<Vec<f64>>,
     /// Weight of the k-point in the Brillouin zone, not normalised.
     #[serde(with = "number::optional_array", default)]
     #[schemars(with = "Option<Vec<number::Real>>")]
@@ -65,10 +69,33 @@ pub struct Levels {
     #[serde(with = "number::optional_array", default)]
     #[schemars(with = "Option<Vec<number::Real>>")]
     pub energy_quasiparticle_ev: Option<Vec<f64>>,
+    /// Quasiparticle energy minus mean-field energy.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub correction_ev: Option<Vec<f64>>,
+    /// Quasiparticle weight Z.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub renormalization: Option<Vec<f64>>,
+    /// Exchange part of the self-energy.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub exchange_ev: Option<Vec<f64>>,
+    /// Correlation part of the self-energy.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub correlation_ev: Option<Vec<f64>>,
+    /// Exchange-correlation potential of the mean field.
+    #[serde(with = "number::optional_array", default)]
+    #[schemars(with = "Option<Vec<number::Real>>")]
+    pub xc_potential_ev: Option<Vec<f64>>,
     /// Occupation, between 0 and the declared maximum (1 or 2).
     #[serde(with = "number::optional_array", default)]
     #[schemars(with = "Option<Vec<number::Real>>")]
     pub occupation: Option<Vec<f64>>,
+    /// Shares of atoms and orbitals in the state.
+    #[serde(skip_serializing_if = "Vec::is_empty", default)]
+    pub projections: Vec<Named>,
 }
 
 impl Document for Levels {

@@ -1,30 +1,42 @@
 //! The neutral documents: what every reader lowers to and every writer starts from.
 //!
-//! This room owns the shapes of `levels`, `spectrum` and `result`, their provenance, and the trait by
+//! This room owns the shapes of the documents and of `result`, their provenance, and the trait by
 //! which a position survives. It knows serde and nothing of files, formats or numerics. Arrays are
 //! flat, one entry a row, in file order; energies are in eV and names end in the unit.
 
 mod curves;
+mod density;
+mod dispersion;
 mod finding;
+mod gaps;
 mod levels;
 mod locate;
+mod named;
 pub mod number;
 mod provenance;
 mod quantity;
 mod result;
+mod series;
 mod spectrum;
+mod texts;
 
 pub use curves::{Curves, DensityCurve, Side, SideCurve};
+pub use density::{Density, DensityKind};
+pub use dispersion::Dispersion;
 pub use finding::{Field, Finding, Severity};
+pub use gaps::{Excitation, Gaps};
 pub use levels::{Computation, Levels};
 pub use locate::Locate;
+pub use named::Named;
 pub use provenance::{Provenance, SourceRecord, Step};
 pub use quantity::Quantity;
 pub use result::{
     Alternative, BudgetRow, Caution, Computed, EdgeLocation, Evaluation, Expanded, FileRecord,
     FitRecord, Measured, ProtocolEdge, ProtocolRecord, ResultDocument, Shift, SpinGap, Verdict,
 };
+pub use series::Series;
 pub use spectrum::{Conditions, IntensityKind, Spectrum};
+pub use texts::Texts;
 
 /// A document that carries its own name and version.
 pub trait Document: serde::Serialize + serde::de::DeserializeOwned + schemars::JsonSchema {

@@ -350,7 +350,7 @@ impl<'a> Reader<'a> {
         units
     }
 
-    /// `column.ROLE = "header"`, or its number.
+    /// `column.ROLE = "header"`, its number, or `"2-9"` for several.
     pub(super) fn columns(&mut self, section: &mut Section<'_>) -> BTreeMap<Role, ColumnChoice> {
         let mut columns = BTreeMap::new();
         for (role, value) in self.by_role(section, "column") {
@@ -360,7 +360,10 @@ impl<'a> Reader<'a> {
                 .and_then(|integer| integer.as_str().parse::<usize>().ok())
                 .filter(|number| *number > 0);
             let choice = match (value.get_ref().as_str(), number) {
-                (Some(header), _) => ColumnChoice::Header(header.to_owned()),
+                (Some(text), _) => match ColumnChoice::from_text(text) {
+                    range @ ColumnChoice::Range(..) => range,
+                    _ => ColumnChoice::Header(text.to_owned()),
+                },
                 (None, Some(number)) => ColumnChoice::Number(number),
                 (None, None) => {
                     self.wrong(

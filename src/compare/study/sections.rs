@@ -7,7 +7,7 @@ use super::{
     ComparisonSection, ComputedEnergies, ComputedSection, Correction, Protocol, SideSection,
     Stated, Study,
 };
-use crate::parse::{Hints, Problem};
+use crate::parse::{Decimal, Delimiter, Hints, Problem, Settle};
 use crate::quantity::{AxisKind, Reference};
 
 /// The tolerance where a study names none, eV.
@@ -105,6 +105,29 @@ fn needed<T>(
     value
 }
 
+fn decimal(reader: &mut Reader<'_>, section: &mut Section<'_>) -> Option<Decimal> {
+    let words = [Decimal::Point, Decimal::Comma].map(|decimal| (decimal.name(), decimal));
+    reader
+        .word(section, "decimal", &words)
+        .map(|(decimal, _)| decimal)
+}
+
+/// Which curve of a file that has several.
+// The number comes from a whole one.
+#[allow(clippy::cast_possible_truncation, clippy::cast_sign_loss)]
+fn block(reader: &mut Reader<'_>, section: &mut Section<'_>) -> Option<usize> {
+    reader
+        .whole(section, "block")
+        .map(|stated| stated.value as usize)
+}
+
+fn delimiter(reader: &mut Reader<'_>, section: &mut Section<'_>) -> Option<Delimiter> {
+    let words = Delimiter::ALL.map(|delimiter| (delimiter.name(), delimiter));
+    reader
+        .word(section, "delimiter", &words)
+        .map(|(delimiter, _)| delimiter)
+}
+
 fn computed(reader: &mut Reader<'_>, mut section: Section<'_>) -> Option<ComputedSection> {
     let before = section.has("levels");
     let levels = reader.file(&mut section, "levels");
@@ -123,8 +146,11 @@ fn computed(reader: &mut Reader<'_>, mut section: Section<'_>) -> Option<Compute
         columns: reader.columns(&mut section),
         units: reader.units(&mut section),
         axis: None,
+        decimal: decimal(reader, &mut section),
+        delimiter: delimiter(reader, &mut section),
+        block: None,
         reference: reference.as_ref().map(|(reference, _)| *reference),
-        settle: format!("under [computed] in {}", reader.source.name()),
+        settle: Settle::Keys(format!("under [computed] in {}", reader.source.name())),
     };
     let mut inner = reader.section(&mut section, "uncertainty");
     let mut uncertainty = Vec::new();
@@ -164,11 +190,14 @@ fn side(
         units: reader.units(s),
         axis: reader.word(s, "axis", &AXES).map(|(axis, _)| axis),
         reference: reader.word(s, "reference", &REFERENCES).map(|(r, _)| r),
-        settle: format!(
+        decimal: decimal(reader, s),
+        delimiter: delimiter(reader, s),
+        block: block(reader, s),
+        settle: Settle::Keys(format!(
             "under [{}] in {}",
             s.path("").trim_end_matches('.'),
             reader.source.name()
-        ),
+        )),
     };
     let photon_energy = positive(reader, s, "photon_energy", Dimension::Energy);
     let (analyser_work_function, sample_work_function, sample_bias) = if photoemission {

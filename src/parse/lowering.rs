@@ -1,0 +1,391 @@
+//! From the values of a table to a document: the steps that every kind takes.
+
+use std::collections::BTreeMap;
+
+use rayon::prelude::*;
+
+use super::evidence::{Evidence, agree};
+use super::layout::Layout;
+use super::parsed::{Column, Melt, Parsed, columns, provenance};
+use super::problem::Problems;
+use super::reference::reference;
+use super::role::{Hints, Kind, Role};
+use super::summary::Summary;
+use super::table::Table;
+use super::unit_of_column::Units;
+use super::values::{Content, Values, values};
+use super::{Problem, Source};
+use crate::quantity::{AxisKind, Energy, EnergyUnit, Reference};
+use crate::schema::{Document, Provenance, Texts};
+
+/// A document that a table can be lowered to.
+pub(super) trait Lower: Document {
+    /// The kind of the table.
+    const TABLE: Kind;
+
+    /// Makes the document; what keeps it from being made goes to the problems.
+    fn lower(lowering: &mut Lowering<'_>) -> Option<Self>;
+
+    /// Where the document keeps its origin.
+    fn provenance_mut(&mut self) -> &mut Provenance;
+}
+
+/// Reads a table as a document. With `every` the columns that are not used are read too, and all are
+/// summed up.
+pub(super) fn read<T: Lower>(
+    source: Source,
+    hints: &Hints,
+    every: bool,
+) -> Result<Parsed<T>, Vec<Problem>> {
+    let layout = Layout::of(&source, hints).map_err(|problem| vec![problem])?;
+    read_laid_out(source, layout, hints, every)
+}
+
+/// Reads a table whose lines are known.
+pub(super) fn read_laid_out<T: Lower>(
+    source: Source,
+    layout: Layout,
+    hints: &Hints,
+    every: bool,
+) -> Result<Parsed<T>, Vec<Problem>> {
+    let mut problems = Problems::default();
+    let lowered = Table::open(&source, layout, T::TABLE, hints, &mut problems)
+        .and_then(|table| lowered::<T>(&source, table, hints, every, &mut problems));
+    match lowered {
+        Some((document, columns, table, melt)) if problems.is_empty() => {
+            Ok(Parsed::of_table(document, source, columns, table, melt))
+        }
+        _ => Err(problems.into_list()),
+    }
+}
+
+type Lowered<T> = (T, Vec<Column>, Table, Option<Melt>);
+
+fn lowered<T: Lower>(
+    source: &Source,
+    table: Table,
+    hints: &Hints,
+    every: bool,
+    problems: &mut Problems,
+) -> Option<Lowered<T>> {
+    let has = |role: &Role| !table.fields_of(*role).is_empty();
+    if !T::TABLE.needs().iter().any(|roles| roles.iter().all(has)) {
+        missing(source, &table, T::TABLE, hints, problems);
+        return None;
+    }
+    let wanted = wanted(&table, every);
+    let mut of_values = Problems::default();
+    // The hash of the file is made beside the reading.
+    let (_, read) = rayon::join(
+        || source.record(),
+        || values(source, &table.layout, &table.names, &wanted, &mut of_values),
+    );
+    let summaries: Vec<Option<Summary>> = match every {
+        true => read
+            .columns
+            .par_iter()
+            .map(|column| Some(Summary::of(column)))
+            .collect(),
+        false => vec![None; wanted.len()],
+    };
+    let fields = wanted.iter().map(|&(field, _)| field);
+    let mut lowering = Lowering {
+        source,
+        table: &table,
+        hints,
+        kind: T::TABLE,
+        problems,
+        values: fields.clone().zip(read.columns).collect(),
+        units: BTreeMap::new(),
+        steps: Vec::new(),
+        melt: None,
+    };
+    let document = T::lower(&mut lowering);
+    let Lowering {
+        units, steps, melt, ..
+    } = lowering;
+    problems.append(of_values);
+    let mut columns = columns(&table, hints, &units);
+    for (field, summary) in fields.zip(summaries) {
+        columns[field].summary = summary;
+    }
+    let mut document = document?;
+    let mut record = provenance(source, &table, T::TABLE, &columns);
+    if let Some(first) = read.left_out.first() {
+        record.step(
+            "leave out",
+            format!(
+                "text after the last field in {} rows, first on line {}: `{}`",
+                read.left_out_rows,
+                source.place(first.clone()).line,
+                source.slice(first.clone())
+            ),
+        );
+    }
+    for (action, detail) in steps {
+        record.step(action, detail);
+    }
+    *document.provenance_mut() = record;
+    Some((document, columns, table, melt))
+}
+
+/// The fields to read and what they hold.
+fn wanted(table: &Table, every: bool) -> Vec<(usize, Content)> {
+    (0..table.layout.fields())
+        .filter_map(|field| {
+            let numeric = table.layout.dialect.numeric.get(field) == Some(&true);
+            match table.role_of(field) {
+                Some(role) => Some((field, content(role))),
+                None if !every => None,
+                None if numeric => Some((field, Content::Unused)),
+                None => Some((field, Content::Text)),
+            }
+        })
+        .collect()
+}
+
+fn content(role: Role) -> Content {
+    match role {
+        Role::KIndex | Role::Band => Content::Integer,
+        Role::Spin => Content::Spin,
+        Role::Material
+        | Role::Polymorph
+        | Role::Excitation
+        | Role::Transition
+        | Role::Method
+        | Role::StartingPoint
+        | Role::Origin
+        | Role::Unit => Content::Text,
+        _ => Content::Number,
+    }
+}
+
+/// Says which needed columns are not known.
+fn missing(source: &Source, table: &Table, kind: Kind, hints: &Hints, problems: &mut Problems) {
+    if kind == Kind::Levels {
+        return problems.push(super::levels::no_energy(source, table, hints));
+    }
+    let needs = kind.needs().first().copied().unwrap_or_default();
+    for &role in needs
+        .iter()
+        .filter(|role| table.fields_of(**role).is_empty())
+    {
+        let (what, examples) = example(kind, role);
+        let problem = Problem::new(format!("no column is known to hold {what}"));
+        problems.push(table.with_columns(source, problem).with_help(format!(
+            "name it in the header, as in {examples}, or say which one does, as in {}",
+            hints.setting(&format!("column.{role} = 1"))
+        )));
+    }
+}
+
+fn example(kind: Kind, role: Role) -> (&'static str, &'static str) {
+    match (kind, role) {
+        (Kind::Density, Role::Energy) => ("energies", "`Energy (eV)` or `E - E_F (eV)`"),
+        (_, Role::Energy) => (
+            "energies",
+            "`Kinetic energy (eV)`, `Binding energy (eV)` or `E - E_F (eV)`",
+        ),
+        (_, Role::Intensity) => (
+            "intensities",
+            "`counts`, `intensity (counts/s)` or `intensity (arb. u.)`",
+        ),
+        (_, Role::Density) => ("a density of states", "`DOS (states/eV)`"),
+        (_, Role::Momentum) => ("momenta", "`k (1/Å)`"),
+        (_, Role::Material) => ("materials", "`material`"),
+        (_, Role::Parameter) => ("parameters", "`bands`, `cutoff (Ry)` or `k-points`"),
+        _ => ("values", "`gap (eV)`"),
+    }
+}
+
+/// A table on its way to a document.
+pub(super) struct Lowering<'a> {
+    pub source: &'a Source,
+    pub table: &'a Table,
+    pub hints: &'a Hints,
+    pub kind: Kind,
+    pub problems: &'a mut Problems,
+    values: BTreeMap<usize, Values>,
+    units: BTreeMap<usize, (String, String)>,
+    steps: Vec<(String, String)>,
+    /// Where several columns of the file became one of the document.
+    pub melt: Option<Melt>,
+}
+
+impl Lowering<'_> {
+    /// The units of this table's columns.
+    pub fn unit_finder(&self) -> Units<'_> {
+        Units {
+            source: self.source,
+            table: self.table,
+            kind: self.kind,
+            hints: self.hints,
+        }
+    }
+
+    /// The number of rows of the file.
+    pub fn rows(&self) -> usize {
+        self.table.layout.rows
+    }
+
+    /// The field of a role that one column may have.
+    pub fn field(&self, role: Role) -> Option<usize> {
+        self.table.fields.get(&role).copied()
+    }
+
+    /// Takes the numbers of a field.
+    pub fn numbers(&mut self, field: usize) -> Vec<f64> {
+        self.values
+            .remove(&field)
+            .map(Values::numbers)
+            .unwrap_or_default()
+    }
+
+    /// Takes the numbers of a role, where there is a column of them.
+    pub fn numbers_of(&mut self, role: Role) -> Option<Vec<f64>> {
+        self.field(role).map(|field| self.numbers(field))
+    }
+
+    /// Takes the whole numbers of a role.
+    pub fn whole_of(&mut self, role: Role) -> Option<Vec<i64>> {
+        let field = self.field(role)?;
+        self.values.remove(&field).map(Values::whole)
+    }
+
+    /// Takes the texts of a role.
+    pub fn texts_of(&mut self, role: Role) -> Option<Texts> {
+        let field = self.field(role)?;
+        self.values.remove(&field).map(Values::texts)
+    }
+
+    /// Notes the unit of a field and who gives it.
+    pub fn note<U: std::fmt::Display>(&mut self, field: usize, unit: &Evidence<U>) {
+        self.units
+            .insert(field, (unit.value.to_string(), unit.says.clone()));
+    }
+
+    /// Notes what was done.
+    pub fn step(&mut self, action: &str, detail: impl Into<String>) {
+        self.steps.push((action.to_owned(), detail.into()));
+    }
+
+    /// Takes the energies of a field in eV; its unit is looked for, or given by a column of units.
+    pub fn energies(
+        &mut self,
+        role: Role,
+        field: usize,
+        axis: Option<AxisKind>,
+    ) -> Option<Vec<f64>> {
+        if let Some(units) = self.field(Role::Unit) {
+            let said = self.unit_finder().energy_if_said(role, field);
+            if self.problems.keep(said)?.is_none() {
+                return self.energies_by_row(field, units);
+            }
+        }
+        let unit = self.unit_finder().energy(role, field, axis);
+        let unit = self.problems.keep(unit)?;
+        self.note(field, &unit);
+        Some(in_ev(self.numbers(field), unit.value))
+    }
+
+    /// The energies of every field of a role that several columns may have.
+    pub fn all_energies(&mut self, role: Role, axis: Option<AxisKind>) -> Option<Vec<Vec<f64>>> {
+        let fields = self.table.fields_of(role);
+        let columns: Vec<Option<Vec<f64>>> = fields
+            .into_iter()
+            .map(|field| self.energies(role, field, axis))
+            .collect();
+        columns.into_iter().collect()
+    }
+
+    fn energies_by_row(&mut self, field: usize, units: usize) -> Option<Vec<f64>> {
+        let Some(Values::Texts(texts)) = self.values.get(&units) else {
+            return None;
+        };
+        let texts = texts.clone();
+        let mut numbers = self.numbers(field);
+        for (row, (number, text)) in numbers.iter_mut().zip(texts.iter()).enumerate() {
+            match EnergyUnit::from_spelling(text).filter(|unit| unit.is_linear()) {
+                Some(unit) => *number = Energy::new(*number, unit).electronvolts(),
+                // A value that is not there needs no unit.
+                None if number.is_nan() => {}
+                None => {
+                    let (source, layout) = (self.source, &self.table.layout);
+                    self.problems.push_with(|| {
+                        let span = layout.cell(source, row, units).unwrap_or(0..0);
+                        Problem::new(format!("`{text}` is not the unit of an energy"))
+                            .at(source.place(span))
+                            .with_help(
+                                "energies are in eV, meV, Ha, Ry, kJ/mol, kcal/mol, cm-1 or K",
+                            )
+                    });
+                }
+            }
+        }
+        let says = self.table.says(units);
+        self.units.insert(field, ("by row".to_owned(), says));
+        Some(numbers)
+    }
+
+    /// The zero of the energies in some fields.
+    pub fn reference(&mut self, fields: &[usize]) -> Option<Reference> {
+        let found = reference(self.source, self.table, fields, self.hints);
+        let zero = self.problems.keep(found)?;
+        let Some(zero) = zero else {
+            return Some(Reference::Unknown);
+        };
+        self.step("reference", format!("{} by {}", zero.value, zero.says));
+        Some(zero.value)
+    }
+
+    /// What the energies of a field are counted along, where anything says it.
+    pub fn axis_if_said(&mut self, field: usize) -> Option<Option<AxisKind>> {
+        let (says, place) = (
+            self.table.says(field),
+            self.table.place_of(self.source, field),
+        );
+        let mut evidence = Vec::new();
+        let header = self.table.names[field].reading.axis;
+        evidence.extend(header.map(|axis| Evidence::at(axis, says, place)));
+        evidence.extend(self.table.metadata.axes.iter().cloned());
+        let hinted = self.hints.axis;
+        evidence.extend(hinted.map(|axis| Evidence::setting(axis, self.hints.says("axis"))));
+        let axis = self.problems.keep(agree("the axis", evidence))?;
+        if let Some(axis) = &axis {
+            self.step("axis", format!("{} by {}", axis.value, axis.says));
+        }
+        Some(axis.map(|axis| axis.value))
+    }
+
+    /// What the energies of a measurement are counted along.
+    pub fn axis(&mut self, field: usize) -> Option<AxisKind> {
+        let axis = self.axis_if_said(field)?;
+        if axis.is_none() {
+            let problem = Problem::new(format!(
+                "nothing says what the energies in column {} `{}` are counted along: kinetic, \
+                 binding, final-state or photon",
+                field + 1,
+                self.table.names[field].text
+            ));
+            self.problems.push(
+                problem
+                    .at(self.table.place_of(self.source, field))
+                    .with_help(format!(
+                        "name it in the header, as in `Kinetic energy (eV)`, or write {}",
+                        self.hints.setting("axis = \"kinetic\"")
+                    )),
+            );
+        }
+        axis
+    }
+}
+
+/// Energies in eV.
+pub(super) fn in_ev(mut values: Vec<f64>, unit: EnergyUnit) -> Vec<f64> {
+    if unit != EnergyUnit::Electronvolt {
+        for value in &mut values {
+            *value = Energy::new(*value, unit).electronvolts();
+        }
+    }
+    values
+}
