@@ -2,15 +2,14 @@
 
 use std::collections::BTreeSet;
 use std::fmt::Write as _;
-use std::io::Write as _;
 use std::path::{Path, PathBuf};
 
 use clap::Args;
 
-use super::{DONE, FINDINGS, Least, REFUSED};
+use super::reading::rendered;
+use super::{DONE, FINDINGS, Least, print, refuse, say};
 use crate::compare::{Error, Outcome, Study, compare};
 use crate::export;
-use crate::parse::{Problem, render};
 use crate::schema::{Finding, ResultDocument, Severity};
 
 /// Arguments of `compare`.
@@ -110,11 +109,6 @@ fn written(mut outcome: Outcome, folder: &Path, replace: bool) -> Result<ResultD
     Ok(outcome.result)
 }
 
-fn rendered(problems: &[Problem]) -> String {
-    let list: Vec<String> = problems.iter().map(render).collect();
-    list.join("\n\n")
-}
-
 fn told(findings: &[Finding]) -> String {
     let list: Vec<String> = findings
         .iter()
@@ -171,21 +165,11 @@ fn report(arguments: &Arguments, folders: &[PathBuf], results: &[ResultDocument]
     if !findings.is_empty() {
         say(&told(&findings));
     }
-    // A closed pipe is the reader's choice.
-    let _ = std::io::stdout().lock().write_all(text.as_bytes());
+    print(&text);
     let least = Severity::from(arguments.severity);
     if findings.iter().any(|finding| finding.severity >= least) {
         FINDINGS
     } else {
         DONE
     }
-}
-
-fn refuse(message: &str) -> u8 {
-    say(message);
-    REFUSED
-}
-
-fn say(message: &str) {
-    let _ = writeln!(std::io::stderr().lock(), "{message}");
 }

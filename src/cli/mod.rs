@@ -4,7 +4,11 @@
 //! messages on standard error. It decides nothing about numbers.
 
 mod compare;
+mod convert;
+mod look;
+mod reading;
 
+use std::io::Write as _;
 use std::process::ExitCode;
 
 use clap::{Parser, Subcommand, ValueEnum};
@@ -30,6 +34,10 @@ struct Arguments {
 enum Command {
     /// Compare computed levels with measured curves as study files say
     Compare(compare::Arguments),
+    /// Convert a file to the neutral document
+    Convert(convert::Arguments),
+    /// Show what is understood of files, on what evidence
+    Look(look::Arguments),
 }
 
 /// The least severity of a finding that changes the exit status.
@@ -55,6 +63,24 @@ impl From<Least> for Severity {
 pub fn run() -> ExitCode {
     let status = match Arguments::parse().command {
         Command::Compare(arguments) => compare::run(&arguments),
+        Command::Convert(arguments) => convert::run(&arguments),
+        Command::Look(arguments) => look::run(&arguments),
     };
     ExitCode::from(status)
+}
+
+/// Says why nothing was done.
+fn refuse(message: &str) -> u8 {
+    say(message);
+    REFUSED
+}
+
+/// Says something on standard error.
+fn say(message: &str) {
+    let _ = writeln!(std::io::stderr().lock(), "{message}");
+}
+
+/// Prints on standard output. A closed pipe is the reader's choice.
+fn print(text: &str) {
+    let _ = std::io::stdout().lock().write_all(text.as_bytes());
 }

@@ -8,7 +8,7 @@ use std::path::{Path, PathBuf};
 pub enum Error {
     /// There is a result in the folder already.
     #[error(
-        "{} exists already: choose another folder, or ask for the old result to be replaced (--replace)",
+        "{} exists already: choose another name, or ask for the old one to be replaced (--replace)",
         path.display()
     )]
     Exists {
@@ -38,6 +38,18 @@ pub enum Error {
     /// The target is there and is not a folder.
     #[error("{} is not a folder: name a folder for the result", path.display())]
     NotAFolder {
+        /// The target.
+        path: PathBuf,
+    },
+    /// The target's name does not say a format that is written.
+    #[error("{} cannot be written: expected a name that ends in .json", path.display())]
+    Format {
+        /// The target.
+        path: PathBuf,
+    },
+    /// The target is there and is no regular file.
+    #[error("{} is no regular file, so it is not replaced: name another", path.display())]
+    NotAFile {
         /// The target.
         path: PathBuf,
     },

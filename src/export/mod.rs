@@ -1,4 +1,5 @@
-//! A result becomes files in a folder, a figure, a report and a screen of text.
+//! A result becomes files in a folder, a figure, a report and a screen of text; a document becomes a
+//! file.
 //!
 //! This room owns the names of the files, what each holds, and how they come to stand in a folder
 //! whole or not at all. It computes no physics: every number that it shows is already in the result
@@ -7,6 +8,7 @@
 
 mod atomic;
 mod csv_curves;
+mod document;
 mod error;
 mod figure;
 mod folder;
@@ -17,6 +19,7 @@ mod sample;
 mod summary;
 mod words;
 
+pub use document::write_document;
 pub use error::Error;
 pub use figure::figure_svg;
 pub use folder::{check_target, write_result};

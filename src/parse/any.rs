@@ -6,7 +6,8 @@ use super::lowering;
 use super::parsed::{Column, Manner, Parsed};
 use super::role::{Hints, Kind};
 use super::standards;
-use super::{Problem, Source, document};
+use super::{Problem, Source, Statement, document};
+use crate::quantity::Reference;
 use crate::schema::{Density, Dispersion, Gaps, Levels, Provenance, Series, Spectrum};
 
 /// A document of any kind.
@@ -70,6 +71,24 @@ impl AnyParsed {
     #[must_use]
     pub fn source(&self) -> &Source {
         each!(self, parsed => &parsed.source)
+    }
+
+    /// The comment lines that conditions were read from.
+    #[must_use]
+    pub fn conditions(&self) -> Vec<&Statement> {
+        each!(self, parsed => parsed.conditions().collect())
+    }
+
+    /// The zero of the energies, where the kind has one.
+    #[must_use]
+    pub fn reference(&self) -> Option<Reference> {
+        match self {
+            Self::Levels(parsed) => Some(parsed.document.reference),
+            Self::Spectrum(parsed) => Some(parsed.document.reference),
+            Self::Density(parsed) => Some(parsed.document.reference),
+            Self::Dispersion(parsed) => Some(parsed.document.reference),
+            Self::Gaps(_) | Self::Series(_) => None,
+        }
     }
 
     /// Where the numbers come from.

@@ -36,11 +36,29 @@ pub(super) fn read<T: Document>(source: Source) -> Result<Parsed<T>, Problem> {
     }
     let text = source.text().trim_start_matches('\u{feff}');
     let document: T = serde_json::from_str(text).map_err(|error| broken(&source, &error))?;
+    check_lengths(&source, &document)?;
     let manner = Manner {
+        rows: document.lengths().first().map_or(0, |first| first.1),
         dialect: format!("JSON, {}", T::identifier()),
         ..Manner::default()
     };
     Ok(Parsed::of_document(document, source, manner))
+}
+
+/// Refuses arrays of different lengths, which no shape of JSON can.
+fn check_lengths<T: Document>(source: &Source, document: &T) -> Result<(), Problem> {
+    let lengths = document.lengths();
+    let Some(&(first, rows)) = lengths.first() else {
+        return Ok(());
+    };
+    match lengths.iter().find(|&&(_, other)| other != rows) {
+        None => Ok(()),
+        Some((name, other)) => Err(Problem::new(format!(
+            "in `{}` the array `{name}` has {other} entries, but `{first}` says {rows}",
+            source.name()
+        ))
+        .with_help("every array of a document has one entry a row: convert the file again")),
+    }
 }
 
 /// The kind of a document.

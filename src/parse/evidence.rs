@@ -2,6 +2,7 @@
 
 use std::fmt::Display;
 
+use super::role::{Hints, Settle};
 use super::{Place, Problem};
 
 /// A value, who says it, and where.
@@ -51,6 +52,29 @@ pub(super) fn agree<T: PartialEq + Display>(
     }
 }
 
+/// The one value of the file's evidence and the user's. An option of the command line overrules the
+/// file, and says so; a setting of a study file must agree with it.
+pub(super) fn settled<T: PartialEq + Display>(
+    what: &str,
+    mut evidence: Vec<Evidence<T>>,
+    hint: Option<Evidence<T>>,
+    hints: &Hints,
+) -> Result<Option<Evidence<T>>, Problem> {
+    match hint {
+        Some(mut hint) if hints.settle == Settle::Options => {
+            let against = evidence.iter().find(|other| other.value != hint.value);
+            if let Some(other) = against {
+                hint.says = format!("{}, against {} by {}", hint.says, other.value, other.says);
+            }
+            Ok(Some(hint))
+        }
+        hint => {
+            evidence.extend(hint);
+            agree(what, evidence)
+        }
+    }
+}
+
 fn contradiction<T: Display>(what: &str, one: Evidence<T>, other: Evidence<T>) -> Problem {
     let mut problem = Problem::new(format!(
         "{what} is given as {} by {}, and as {} by {}",
@@ -70,6 +94,22 @@ fn contradiction<T: Display>(what: &str, one: Evidence<T>, other: Evidence<T>) -
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn options_overrule_the_file_and_keys_must_agree() {
+        let file = || vec![Evidence::setting(1, "the header")];
+        let hint = || Some(Evidence::setting(2, "--unit"));
+        let mut hints = Hints::default();
+        assert!(settled("the unit", file(), hint(), &hints).is_err());
+        hints.settle = Settle::Options;
+        let unit = settled("the unit", file(), hint(), &hints)
+            .unwrap()
+            .unwrap();
+        assert_eq!(
+            (unit.value, unit.says.as_str()),
+            (2, "--unit, against 1 by the header")
+        );
+    }
 
     #[test]
     fn agreement_and_contradiction() {

@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use rayon::prelude::*;
 
-use super::evidence::{Evidence, agree};
+use super::evidence::{Evidence, settled};
 use super::layout::Layout;
 use super::parsed::{Column, Melt, Parsed, columns, provenance};
 use super::problem::Problems;
@@ -348,9 +348,10 @@ impl Lowering<'_> {
         let header = self.table.names[field].reading.axis;
         evidence.extend(header.map(|axis| Evidence::at(axis, says, place)));
         evidence.extend(self.table.metadata.axes.iter().cloned());
-        let hinted = self.hints.axis;
-        evidence.extend(hinted.map(|axis| Evidence::setting(axis, self.hints.says("axis"))));
-        let axis = self.problems.keep(agree("the axis", evidence))?;
+        let says = self.hints.says("axis");
+        let hint = self.hints.axis.map(|axis| Evidence::setting(axis, says));
+        let axis = settled("the axis", evidence, hint, self.hints);
+        let axis = self.problems.keep(axis)?;
         if let Some(axis) = &axis {
             self.step("axis", format!("{} by {}", axis.value, axis.says));
         }

@@ -26,6 +26,7 @@ mod header_line;
 mod layout;
 mod levels;
 mod line;
+mod look;
 mod lowering;
 mod metadata;
 mod number;

@@ -5,8 +5,10 @@ use std::ops::Range;
 
 use super::condition::ConditionKey;
 use super::decode::Encoding;
+use super::dialect::Delimiter;
 use super::layout::Layout;
 use super::metadata::Statement;
+use super::number::Decimal;
 use super::role::{Hints, Kind, Role};
 use super::skipped::{self, Skipped};
 use super::summary::Summary;
@@ -36,6 +38,10 @@ pub struct Column {
 pub struct Manner {
     /// The dialect in words.
     pub dialect: String,
+    /// The signs of the dialect, where the text is a table.
+    pub signs: Option<(Delimiter, Decimal)>,
+    /// Which curve of the file it is, from 1, where the file may hold several.
+    pub curve: Option<usize>,
     /// The 1-based line of the names.
     pub names_line: Option<usize>,
     /// The number of rows of the file.
@@ -181,6 +187,13 @@ impl<T> Parsed<T> {
         Some(self.source.place(span))
     }
 
+    /// The comment lines that conditions were read from, in order.
+    pub fn conditions(&self) -> impl Iterator<Item = &Statement> {
+        self.known
+            .iter()
+            .filter_map(|(_, index)| self.statements.get(*index))
+    }
+
     /// The comment line that a condition was read from.
     #[must_use]
     pub fn statement(&self, key: ConditionKey) -> Option<&Statement> {
@@ -199,6 +212,8 @@ fn manner(source: &Source, table: &Table) -> Manner {
             dialect.delimiter.in_words(),
             dialect.decimal.name()
         ),
+        signs: Some((dialect.delimiter, dialect.decimal)),
+        curve: None,
         names_line: table.line,
         rows: table.layout.rows,
         blocks: table.layout.breaks.len() + 1,

@@ -1,7 +1,7 @@
 //! The zero that the energies of a table are counted from.
 
-use super::evidence::{Evidence, agree};
-use super::role::Hints;
+use super::evidence::{Evidence, settled};
+use super::role::{Hints, Settle};
 use super::table::Table;
 use super::{Problem, Source};
 use crate::quantity::Reference;
@@ -21,7 +21,11 @@ pub(super) fn reference(
         }
     }
     evidence.extend(table.metadata.references.iter().cloned());
-    let hinted = hints.reference.filter(|&zero| zero != Reference::Unknown);
-    evidence.extend(hinted.map(|zero| Evidence::setting(zero, hints.says("reference"))));
-    agree("the zero of the energies", evidence)
+    // A study may leave the zero open; an option overrules the file even so.
+    let open = hints.settle != Settle::Options;
+    let hinted = hints
+        .reference
+        .filter(|&zero| !open || zero != Reference::Unknown);
+    let hint = hinted.map(|zero| Evidence::setting(zero, hints.says("reference")));
+    settled("the zero of the energies", evidence, hint, hints)
 }

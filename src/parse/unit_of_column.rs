@@ -2,7 +2,7 @@
 
 use std::fmt::Display;
 
-use super::evidence::{Evidence, agree};
+use super::evidence::{Evidence, agree, settled};
 use super::role::{Hints, Kind, Role};
 use super::table::Table;
 use super::{Place, Problem, Source};
@@ -126,8 +126,8 @@ impl Units<'_> {
             evidence.push(Evidence::at(unit, says.clone(), place.clone()));
         }
         evidence.extend(comments);
-        evidence.extend(self.hinted(role, read)?);
-        agree(&format!("the unit of {role}"), evidence)
+        let hint = self.hinted(role, read)?;
+        settled(&format!("the unit of {role}"), evidence, hint, self.hints)
     }
 
     /// What the user says; `unit.energy` speaks for every energy without a setting of its own.

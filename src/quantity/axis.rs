@@ -20,6 +20,9 @@ pub enum AxisKind {
 }
 
 impl AxisKind {
+    /// Every kind.
+    pub const ALL: [Self; 4] = [Self::Kinetic, Self::Binding, Self::FinalState, Self::Photon];
+
     /// The name used in study files, messages and documents.
     #[must_use]
     pub fn name(self) -> &'static str {
@@ -34,9 +37,7 @@ impl AxisKind {
     /// Reads a name back.
     #[must_use]
     pub fn from_name(text: &str) -> Option<Self> {
-        [Self::Kinetic, Self::Binding, Self::FinalState, Self::Photon]
-            .into_iter()
-            .find(|kind| kind.name() == text)
+        Self::ALL.into_iter().find(|kind| kind.name() == text)
     }
 }
 
@@ -62,6 +63,9 @@ pub enum Reference {
 }
 
 impl Reference {
+    /// Every reference.
+    pub const ALL: [Self; 4] = [Self::Fermi, Self::ValenceEdge, Self::Vacuum, Self::Unknown];
+
     /// The name used in study files, messages and documents.
     #[must_use]
     pub fn name(self) -> &'static str {
@@ -76,7 +80,7 @@ impl Reference {
     /// Reads a name back.
     #[must_use]
     pub fn from_name(text: &str) -> Option<Self> {
-        [Self::Fermi, Self::ValenceEdge, Self::Vacuum, Self::Unknown]
+        Self::ALL
             .into_iter()
             .find(|reference| reference.name() == text)
     }

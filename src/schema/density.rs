@@ -44,4 +44,11 @@ pub struct Density {
 
 impl Document for Density {
     const KIND: &'static str = "density";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let mut lengths = vec![("energy_ev", self.energy_ev.len())];
+        lengths.extend(self.total.as_ref().map(|column| ("total", column.len())));
+        lengths.extend(self.projections.iter().map(Named::length));
+        lengths
+    }
 }

@@ -37,4 +37,12 @@ pub struct Dispersion {
 
 impl Document for Dispersion {
     const KIND: &'static str = "dispersion";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let uncertainty = self.standard_uncertainty_ev.as_ref();
+        let uncertainty = uncertainty.map(|column| ("standard_uncertainty_ev", column.len()));
+        let mut lengths = vec![("k", self.k.len()), ("energy_ev", self.energy_ev.len())];
+        lengths.extend(uncertainty);
+        lengths
+    }
 }

@@ -76,4 +76,34 @@ pub struct Gaps {
 
 impl Document for Gaps {
     const KIND: &'static str = "gaps";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let texts = [
+            ("polymorph", &self.polymorph),
+            ("method", &self.method),
+            ("starting_point", &self.starting_point),
+            ("source", &self.source),
+        ];
+        let numbers = [
+            ("uncertainty_ev", &self.uncertainty_ev),
+            ("temperature_k", &self.temperature_k),
+        ];
+        let mut lengths = vec![
+            ("material", self.material.len()),
+            ("value_ev", self.value_ev.len()),
+            ("excitation", self.excitation.len()),
+            ("momentum", self.momentum.len()),
+        ];
+        lengths.extend(
+            texts
+                .into_iter()
+                .filter_map(|(name, column)| Some((name, column.as_ref()?.len()))),
+        );
+        lengths.extend(
+            numbers
+                .into_iter()
+                .filter_map(|(name, column)| Some((name, column.as_ref()?.len()))),
+        );
+        lengths
+    }
 }

@@ -100,6 +100,42 @@ pub struct Levels {
 
 impl Document for Levels {
     const KIND: &'static str = "levels";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let whole = [
+            ("k_index", &self.k_index),
+            ("band", &self.band),
+            ("spin", &self.spin),
+        ];
+        let numbers = [
+            ("k_x", &self.k_x),
+            ("k_y", &self.k_y),
+            ("k_z", &self.k_z),
+            ("k_distance", &self.k_distance),
+            ("weight", &self.weight),
+            ("energy_mean_field_ev", &self.energy_mean_field_ev),
+            ("energy_quasiparticle_ev", &self.energy_quasiparticle_ev),
+            ("correction_ev", &self.correction_ev),
+            ("renormalization", &self.renormalization),
+            ("exchange_ev", &self.exchange_ev),
+            ("correlation_ev", &self.correlation_ev),
+            ("xc_potential_ev", &self.xc_potential_ev),
+            ("occupation", &self.occupation),
+        ];
+        let mut lengths = vec![("rows", self.rows)];
+        lengths.extend(
+            whole
+                .into_iter()
+                .filter_map(|(name, column)| Some((name, column.as_ref()?.len()))),
+        );
+        lengths.extend(
+            numbers
+                .into_iter()
+                .filter_map(|(name, column)| Some((name, column.as_ref()?.len()))),
+        );
+        lengths.extend(self.projections.iter().map(Named::length));
+        lengths
+    }
 }
 
 impl Levels {

@@ -11,6 +11,7 @@ mod finding;
 mod gaps;
 mod levels;
 mod locate;
+mod look;
 mod named;
 pub mod number;
 mod provenance;
@@ -27,6 +28,7 @@ pub use finding::{Field, Finding, Severity};
 pub use gaps::{Excitation, Gaps};
 pub use levels::{Computation, Levels};
 pub use locate::Locate;
+pub use look::{Look, LookColumn, LookCondition, LookFile, LookOption, LookSkipped};
 pub use named::Named;
 pub use provenance::{Provenance, SourceRecord, Step};
 pub use quantity::Quantity;
@@ -44,6 +46,12 @@ pub trait Document: serde::Serialize + serde::de::DeserializeOwned + schemars::J
     const KIND: &'static str;
     /// The version of the shape.
     const VERSION: u32 = 1;
+
+    /// The lengths of the arrays that must be equal, with their names.
+    #[must_use]
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        Vec::new()
+    }
 
     /// The text of the `schema` key.
     #[must_use]

@@ -15,3 +15,10 @@ pub struct Named {
     #[schemars(with = "Vec<number::Real>")]
     pub values: Vec<f64>,
 }
+
+impl Named {
+    /// Its name and its length.
+    pub(super) fn length(&self) -> (&str, usize) {
+        (&self.name, self.values.len())
+    }
+}

@@ -27,4 +27,13 @@ pub struct Series {
 
 impl Document for Series {
     const KIND: &'static str = "series";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let uncertainty = self.standard_uncertainty_ev.as_ref();
+        let uncertainty = uncertainty.map(|column| ("standard_uncertainty_ev", column.len()));
+        let mut lengths = vec![("value_ev", self.value_ev.len())];
+        lengths.extend(uncertainty);
+        lengths.extend(self.parameters.iter().map(Named::length));
+        lengths
+    }
 }

@@ -74,4 +74,15 @@ pub struct Spectrum {
 
 impl Document for Spectrum {
     const KIND: &'static str = "spectrum";
+
+    fn lengths(&self) -> Vec<(&str, usize)> {
+        let uncertainty = self.standard_uncertainty.as_ref();
+        let uncertainty = uncertainty.map(|column| ("standard_uncertainty", column.len()));
+        let mut lengths = vec![
+            ("energy_ev", self.energy_ev.len()),
+            ("intensity", self.intensity.len()),
+        ];
+        lengths.extend(uncertainty);
+        lengths
+    }
 }
