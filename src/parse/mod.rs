@@ -14,6 +14,7 @@ mod dialect;
 mod evidence;
 mod header;
 mod header_line;
+pub mod iso14976;
 mod layout;
 mod levels;
 mod metadata;
