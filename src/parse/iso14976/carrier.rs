@@ -70,7 +70,7 @@ impl Whole for i64 {
 }
 
 impl Whole for u32 {
-    const EXPECTED: &'static str = "a whole number from 0 to 4294967295";
+    const EXPECTED: &'static str = "a whole number from 0";
 
     fn from_number(number: i64) -> Option<Self> {
         number.try_into().ok()
@@ -83,7 +83,7 @@ impl Whole for u32 {
 
 /// -1 where it is unknown.
 impl Whole for Option<u32> {
-    const EXPECTED: &'static str = "a whole number, or -1 where it is unknown";
+    const EXPECTED: &'static str = "a whole number from 0 (-1 where it is unknown)";
 
     fn from_number(number: i64) -> Option<Self> {
         match number {
@@ -98,7 +98,7 @@ impl Whole for Option<u32> {
 }
 
 impl Whole for Part {
-    const EXPECTED: &'static str = "the number of a part of a block, 1 to 40";
+    const EXPECTED: &'static str = "the number of a part of a block (1 to 40)";
 
     fn from_number(number: i64) -> Option<Self> {
         number.try_into().ok().and_then(Part::new)

@@ -2,7 +2,7 @@
 //! `real = sign? (digit+ ("." digit*)? | "." digit+) (("E" | "e") sign? digit+)?`.
 
 use nom::branch::alt;
-use nom::character::complete::{char, digit0, digit1, one_of};
+use nom::character::complete::{char, digit1, one_of};
 use nom::combinator::{all_consuming, opt, recognize};
 use nom::{IResult, Parser};
 
@@ -26,8 +26,9 @@ pub(super) fn has_decimal_comma(text: &str) -> bool {
 }
 
 fn decimal(text: &str) -> IResult<&str, &str> {
+    // Not `digit0`: at the end of a text it leaves a rest that `recognize` cannot measure against.
     let digits = alt((
-        recognize((digit1, opt((char('.'), digit0)))),
+        recognize((digit1, opt((char('.'), opt(digit1))))),
         recognize((char('.'), digit1)),
     ));
     let exponent = opt((one_of("eE"), opt(one_of("+-")), digit1));

@@ -188,7 +188,8 @@ impl<'a> Reader<'a> {
         while self.left > 0 {
             let (span, text) = self.word(item)?;
             if !text.is_empty() {
-                return Err(self.unexpected(item, "nothing after it", span));
+                let what = format!("expected nothing after it and found `{}`", visible(text));
+                return Err(self.problem(item, &what, span));
             }
         }
         Ok(())
