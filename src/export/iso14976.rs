@@ -238,7 +238,7 @@ fn number(value: f64) -> Option<String> {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::parse::iso14976::{ExperimentMode, Label, Pair, Part};
+    use crate::parse::iso14976::{Abscissa, ExperimentMode, Extent, Label, Pair, Part};
 
     /// An experiment with two blocks whose every part is blank or zero.
     fn two_blocks() -> Experiment {
@@ -246,7 +246,7 @@ mod tests {
             spectral_regions: Some(1),
             blocks: vec![
                 Block {
-                    abscissa: Some(Default::default()),
+                    abscissa: Some(Abscissa::default()),
                     ..Block::default()
                 };
                 2
@@ -292,7 +292,7 @@ mod tests {
         let mut experiment = two_blocks();
         let block = &mut experiment.blocks[0];
         block.variables = [Label::default()].into();
-        block.extents = [Default::default()].into();
+        block.extents = [Extent::default()].into();
         block.ordinates = vec![f64::INFINITY];
         let refusal = text(&experiment).unwrap_err();
         insta::assert_snapshot!(refusal, @"block 1, ordinate value: the number inf; ISO 14976 cannot carry it");

@@ -2,7 +2,7 @@
 //! Hazell and M. P. Seah, Surf. Interface Anal. 13, 63 (1988).
 //!
 //! One item stands on a line, and its place says what it is. This folder owns the standard's items,
-//! their order ([`layout`]) and their keywords, reads them into an [`Experiment`] and lowers what is a
+//! their order and their keywords, reads them into an [`Experiment`] and lowers what is a
 //! photoelectron spectrum to the neutral document. The writer in `export` walks the same order.
 //!
 //! The numbers of the items and their names are the standard's. The order and the conditions come
@@ -16,6 +16,7 @@
 //! Left out: an experiment mode beyond the eight of the summary, file sets spread over several files,
 //! and any meaning of future-upgrade entries, which are kept as text.
 
+mod abscissa;
 mod anchor;
 mod block;
 mod carrier;
@@ -27,6 +28,7 @@ mod reader;
 mod signal;
 mod skipped;
 mod spectra;
+mod steps;
 
 #[cfg(test)]
 mod tests;

@@ -89,22 +89,24 @@ pub(super) fn kind(variable: &Label, mode: SignalMode) -> Result<IntensityKind, 
     })
 }
 
-/// Whether the name gives another unit than the unit itself. `counts` is a name too, and may have
-/// any unit.
+/// Whether the name gives another unit than the unit itself.
 fn contradicts(variable: &Label, unit: IntensityUnit) -> bool {
-    let name = variable.label.trim();
-    let said = reading(variable)
+    let name = variable.label.to_lowercase();
+    // `counts` alone is a name, and may have any unit.
+    let is_name = !name.contains(['(', '[', '/']);
+    let said = |text: &String| {
+        let said = IntensityUnit::from_spelling(text);
+        said.filter(|&said| !(is_name && said == IntensityUnit::Counts))
+    };
+    let other = reading(variable)
         .units
         .iter()
-        .filter_map(|text| IntensityUnit::from_spelling(text))
-        .find(|&said| {
-            said != unit && !(said == IntensityUnit::Counts && !name.contains(['(', '[', '/']))
-        });
+        .filter_map(said)
+        .any(|said| said != unit);
     let rate = name
-        .to_lowercase()
         .split(|c: char| !c.is_alphanumeric())
         .any(|word| matches!(word, "rate" | "second"));
-    said.is_some() || (rate && unit == IntensityUnit::Counts)
+    other || (rate && unit == IntensityUnit::Counts)
 }
 
 #[cfg(test)]
