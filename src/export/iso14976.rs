@@ -4,10 +4,11 @@
 //! read back as itself, an unknown one as 1E37. What the format cannot carry is refused.
 
 use std::fmt;
+use std::sync::Arc;
 
 use crate::parse::iso14976::{
-    Block, Carrier, END, Experiment, Frame, Item, Keyword, List, Selection, Text, UNKNOWN, Whole,
-    block, header,
+    Block, Carrier, END, Experiment, Frame, Item, Keyword, List, Part, Selection, Text, UNKNOWN,
+    Whole, block, header,
 };
 
 /// Characters that the standard allows in a line.
@@ -49,19 +50,17 @@ pub fn text(experiment: &Experiment) -> Result<String, NotCarried> {
         .drain(..)
         .for_each(|(_, line)| push(&mut out, &line));
     let (frame, selection) = (Frame::of(&copy), &experiment.selection);
-    let mut first = Vec::new();
     for (index, given) in copy.blocks.iter_mut().enumerate() {
-        writer.block = Some(index);
+        writer.enter(index, selection);
         block(&mut writer, &frame, given)?;
         let lines = std::mem::take(&mut writer.lines);
-        let carried = |item: Item| item.0 == 0 || index == 0 || selection.has(item.0);
-        writer.same_where_left_out(carried, &first, &lines)?;
-        for (_, line) in lines.iter().filter(|&&(item, _)| carried(item)) {
+        writer.same_where_left_out(&lines)?;
+        for (_, line) in lines.iter().filter(|&&(item, _)| !writer.leaves_out(item)) {
             push(&mut out, line);
         }
         writer.values(given, &mut out)?;
         if index == 0 {
-            first = lines;
+            writer.keep(lines);
         }
     }
     push(&mut out, END);
@@ -82,14 +81,61 @@ fn listed(writer: &Writer, carried: &Selection, given: &Selection) -> Result<(),
     Err(writer.refusal(item, "a list with no entries"))
 }
 
-/// The lines of the header or of a block, each with its item, before any is left out.
-#[derive(Default)]
+/// The numbered parts of a block, and one place for lines without a number.
+const PARTS: usize = Part::LAST as usize + 1;
+
+/// A line and the item that it holds.
+type Line = (Item, String);
+
 struct Writer {
-    lines: Vec<(Item, String)>,
+    /// The lines of the header or of a block, before any is left out.
+    lines: Vec<Line>,
     block: Option<usize>,
+    left_out: [bool; PARTS],
+    /// The first block's lines, by part.
+    first: [Vec<Line>; PARTS],
+    /// Where the first block's lists are in memory, by part. A reading shares them between blocks,
+    /// and a list that is left out and shared is not gone through again.
+    first_lists: [Option<usize>; PARTS],
+    shared: [bool; PARTS],
+}
+
+impl Default for Writer {
+    fn default() -> Self {
+        Self {
+            lines: Vec::new(),
+            block: None,
+            left_out: [false; PARTS],
+            first: std::array::from_fn(|_| Vec::new()),
+            first_lists: [None; PARTS],
+            shared: [false; PARTS],
+        }
+    }
 }
 
 impl Writer {
+    /// Turns to a block.
+    fn enter(&mut self, index: usize, selection: &Selection) {
+        self.block = Some(index);
+        self.shared = [false; PARTS];
+        if index == 1 {
+            for (part, left_out) in (0..).zip(&mut self.left_out) {
+                *left_out = part > 0 && !selection.has(part);
+            }
+        }
+    }
+
+    /// Keeps the lines of the first block, which later ones may leave out.
+    fn keep(&mut self, lines: Vec<Line>) {
+        for (item, line) in lines {
+            self.first[usize::from(item.0)].push((item, line));
+        }
+    }
+
+    fn leaves_out(&self, item: Item) -> bool {
+        self.left_out[usize::from(item.0)]
+    }
+
     fn refusal(&self, Item(number, name): Item, what: impl fmt::Display) -> NotCarried {
         let block = self.block.map(|index| format!("block {}, ", index + 1));
         let item = (number > 0).then(|| format!("item {number}, "));
@@ -115,19 +161,11 @@ impl Writer {
     }
 
     /// Refuses a block whose lines of a part that is left out are not the first block's.
-    fn same_where_left_out(
-        &self,
-        carried: impl Fn(Item) -> bool,
-        first: &[(Item, String)],
-        lines: &[(Item, String)],
-    ) -> Result<(), NotCarried> {
-        for chunk in lines.chunk_by(|(a, _), (b, _)| a.0 == b.0) {
-            let item = chunk[0].0;
-            let same = || {
-                let of_first = first.iter().filter(|(other, _)| other.0 == item.0);
-                of_first.eq(chunk)
-            };
-            if !carried(item) && !same() {
+    fn same_where_left_out(&self, lines: &[Line]) -> Result<(), NotCarried> {
+        for part in lines.chunk_by(|(a, _), (b, _)| a.0 == b.0) {
+            let item = part[0].0;
+            let number = usize::from(item.0);
+            if self.leaves_out(item) && !self.shared[number] && self.first[number] != part {
                 let what = "not the first block's value, and the parameter list leaves it out";
                 return Err(self.refusal(item, what));
             }
@@ -187,6 +225,14 @@ impl Carrier for Writer {
             let what = format!("{} entries where {count} are announced", list.len());
             return Err(self.refusal(item, what));
         }
+        let (number, place) = (usize::from(item.0), Arc::as_ptr(list).cast::<T>().addr());
+        if self.leaves_out(item) && self.first_lists[number] == Some(place) {
+            self.shared[number] = true;
+            return Ok(());
+        }
+        if self.block == Some(0) {
+            self.first_lists[number] = Some(place);
+        }
         list.to_vec()
             .iter_mut()
             .try_for_each(|entry| each(self, entry))
@@ -238,7 +284,7 @@ fn number(value: f64) -> Option<String> {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::parse::iso14976::{Abscissa, ExperimentMode, Extent, Label, Pair, Part};
+    use crate::parse::iso14976::{Abscissa, ExperimentMode, Extent, Label, Pair};
 
     /// An experiment with two blocks whose every part is blank or zero.
     fn two_blocks() -> Experiment {
