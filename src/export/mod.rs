@@ -12,6 +12,7 @@ mod document;
 mod error;
 mod figure;
 mod folder;
+pub mod iso14976;
 mod read_back;
 mod report;
 #[cfg(test)]

@@ -23,6 +23,7 @@ mod forms;
 mod gaps;
 mod header;
 mod header_line;
+pub mod iso14976;
 mod layout;
 mod levels;
 mod line;
