@@ -14,7 +14,8 @@ use super::skipped::{self, Skipped};
 use super::summary::Summary;
 use super::table::Table;
 use super::{Place, Source};
-use crate::schema::{Locate, Provenance};
+use crate::quantity::IntensityUnit;
+use crate::schema::{IntensityKind, Locate, Provenance};
 
 /// What was understood of one column.
 #[derive(Debug, Clone, PartialEq)]
@@ -337,4 +338,14 @@ pub(super) fn of_source(source: &Source) -> Provenance {
         provenance.step("decode", source.encoding().name());
     }
     provenance
+}
+
+/// The unit of intensities of a kind.
+pub(super) fn intensity_symbol(kind: IntensityKind) -> &'static str {
+    match kind {
+        IntensityKind::Counts => IntensityUnit::Counts,
+        IntensityKind::CountsPerSecond => IntensityUnit::CountsPerSecond,
+        IntensityKind::Arbitrary => IntensityUnit::Arbitrary,
+    }
+    .symbol()
 }

@@ -1,7 +1,7 @@
 //! A number with its unit, as study files and comment lines write it: `21.218 eV`, `-5 V`, `300 K`.
 
 use nom::branch::alt;
-use nom::character::complete::{char, digit0, digit1, multispace0, one_of};
+use nom::character::complete::{char, digit1, multispace0, one_of};
 use nom::combinator::{map_opt, opt, recognize, rest};
 use nom::{IResult, Parser};
 
@@ -132,7 +132,7 @@ fn quantity(text: &str) -> IResult<&str, (f64, &str)> {
 /// A finite decimal number. An `e` with no digits after it belongs to the unit, as in `5eV`.
 fn decimal(text: &str) -> IResult<&str, f64> {
     let digits = alt((
-        recognize((digit1, opt((char('.'), digit0)))),
+        recognize((digit1, opt((char('.'), opt(digit1))))),
         recognize((char('.'), digit1)),
     ));
     let exponent = opt((one_of("eE"), opt(one_of("+-−")), digit1));

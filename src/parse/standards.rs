@@ -1,36 +1,179 @@
-//! Spectra of open standards: where the values of one of their curves stand.
+//! Files in open standards: their curves as documents, and where their values stand.
 
 use std::ops::Range;
+use std::sync::Arc;
 
-use super::parsed::Parsed;
-use super::role::Hints;
+use super::iso14976::{self, Experiment};
+use super::parsed::{self, Column, Manner, Parsed};
+use super::role::{Hints, Role};
+use super::skipped::Skipped;
+use super::summary::Summary;
+use super::values::Values;
 use super::{Problem, Source};
 use crate::schema::Spectrum;
 
-/// A curve of a file in an open standard.
-#[derive(Debug, Clone, PartialEq)]
-pub(super) enum Curve {}
+/// Curves that a message lists.
+const LISTED: usize = 20;
 
-impl Curve {
-    pub fn value_span(&self, _: &Source, _: usize, _: usize) -> Option<Range<usize>> {
+/// A file in an open standard.
+#[derive(Debug, Clone, PartialEq)]
+enum File {
+    Iso14976(Arc<Experiment>),
+}
+
+/// One curve of a file in an open standard.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct Curve {
+    file: File,
+    /// Which curve of the file it is, 0-based.
+    index: usize,
+}
+
+impl File {
+    fn read(source: &Source) -> Option<Result<Self, Vec<Problem>>> {
+        if iso14976::is_like(source.text()) {
+            return Some(iso14976::read(source).map(|file| Self::Iso14976(Arc::new(file))));
+        }
         None
+    }
+
+    fn name(&self) -> &'static str {
+        match self {
+            Self::Iso14976(_) => "ISO 14976",
+        }
+    }
+
+    fn spectra(&self, source: &Source) -> Vec<Result<Spectrum, Skipped>> {
+        match self {
+            Self::Iso14976(file) => file.spectra(source),
+        }
+    }
+
+    /// What the energies and the intensities of a curve are called.
+    fn labels(&self, curve: usize) -> [String; 2] {
+        match self {
+            Self::Iso14976(file) => file.labels(curve),
+        }
     }
 }
 
-/// Every curve of a file in an open standard; `None` where it is in none.
+impl Curve {
+    /// Where the energy (field 0) or the intensity (field 1) of a row stands; energies that are
+    /// counted by steps stand nowhere.
+    pub fn value_span(&self, source: &Source, row: usize, field: usize) -> Option<Range<usize>> {
+        match &self.file {
+            File::Iso14976(file) => file.field_span(source, self.index, row, field),
+        }
+    }
+}
+
+/// Every curve of a file in an open standard; `None` where it is in none. With `every` the columns
+/// are summed up.
 pub(super) fn curves(
-    _source: &Source,
-    _hints: &Hints,
-    _every: bool,
+    source: &Source,
+    hints: &Hints,
+    every: bool,
 ) -> Option<Result<Vec<Parsed<Spectrum>>, Vec<Problem>>> {
-    None
+    Some(match File::read(source)? {
+        Ok(file) => parsed_curves(source, &file, hints, every).map_err(|why| vec![why]),
+        Err(problems) => Err(problems),
+    })
 }
 
 /// The one curve of a file in an open standard, or the one that the user names.
 pub(super) fn one_curve(
-    _source: &Source,
-    _hints: &Hints,
-    _every: bool,
+    source: &Source,
+    hints: &Hints,
+    every: bool,
 ) -> Option<Result<Parsed<Spectrum>, Vec<Problem>>> {
-    None
+    let curves = curves(source, hints, every)?;
+    Some(curves.and_then(|mut curves| match (curves.len(), curves.pop()) {
+        (1, Some(only)) => Ok(only),
+        (several, _) => Err(vec![
+            Problem::new(format!("`{}` holds {several} curves", source.name())).with_help(format!(
+                "say which one is meant, as in {}; `bandrule look` lists them",
+                hints.setting("block = 1")
+            )),
+        ]),
+    }))
+}
+
+fn parsed_curves(
+    source: &Source,
+    file: &File,
+    hints: &Hints,
+    every: bool,
+) -> Result<Vec<Parsed<Spectrum>>, Problem> {
+    let all = file.spectra(source);
+    let count = all.len();
+    if let Some(block) = hints.block.filter(|&block| block == 0 || block > count) {
+        return Err(Problem::new(format!(
+            "{} is {block}, but `{}` has {count} curves, counted from 1",
+            hints.says("block"),
+            source.name()
+        )));
+    }
+    let (mut curves, mut skipped) = (Vec::new(), Vec::new());
+    for (index, curve) in all.into_iter().enumerate() {
+        if hints.block.is_some_and(|block| block != index + 1) {
+            continue;
+        }
+        match curve {
+            Ok(spectrum) => curves.push((index, spectrum)),
+            Err(why) => skipped.push(why),
+        }
+    }
+    if curves.is_empty() {
+        return Err(no_spectrum(source, file, &skipped));
+    }
+    let parsed = curves.into_iter().map(|(index, spectrum)| {
+        let manner = Manner {
+            dialect: format!("{}, curve {} of {count}", file.name(), index + 1),
+            curve: Some(index + 1),
+            rows: spectrum.energy_ev.len(),
+            blocks: 1,
+            skipped: skipped.iter().take(LISTED).cloned().collect(),
+            skipped_lines: skipped.len(),
+            ..Manner::default()
+        };
+        let columns = columns(file, index, &spectrum, every);
+        let curve = Curve {
+            file: file.clone(),
+            index,
+        };
+        Parsed::of_curve(spectrum, source.clone(), columns, manner, curve)
+    });
+    Ok(parsed.collect())
+}
+
+fn no_spectrum(source: &Source, file: &File, skipped: &[Skipped]) -> Problem {
+    let reasons: Vec<String> = skipped
+        .iter()
+        .take(LISTED)
+        .map(|why| format!("line {}: {}", why.line, why.reason))
+        .collect();
+    Problem::new(format!(
+        "`{}` ({}) holds no curve that is read as a spectrum: {}",
+        source.name(),
+        file.name(),
+        reasons.join("; ")
+    ))
+}
+
+fn columns(file: &File, index: usize, spectrum: &Spectrum, every: bool) -> Vec<Column> {
+    let [energy, intensity] = file.labels(index);
+    let summary = |values: &Vec<f64>| every.then(|| Summary::of(&Values::Numbers(values.clone())));
+    let column = |index, role, header: &str, unit: &str, values| Column {
+        header: header.to_owned(),
+        index,
+        role: Some(role),
+        unit: Some(unit.to_owned()),
+        evidence: format!("the label `{header}`; its numbers here in {unit}"),
+        summary: summary(values),
+    };
+    let unit = parsed::intensity_symbol(spectrum.intensity_kind);
+    vec![
+        column(0, Role::Energy, &energy, "eV", &spectrum.energy_ev),
+        column(1, Role::Intensity, &intensity, unit, &spectrum.intensity),
+    ]
 }

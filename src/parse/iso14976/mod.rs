@@ -26,7 +26,6 @@ mod layout;
 mod number;
 mod reader;
 mod signal;
-mod skipped;
 mod spectra;
 mod steps;
 
@@ -40,7 +39,6 @@ pub use block::{
 };
 pub use experiment::{Experiment, Label, List, MapSize, Part, Selection, Text};
 pub use keyword::{AnalyserMode, ExperimentMode, ScanMode, SignalMode, SputterMode, Technique};
-pub use skipped::Skipped;
 
 pub(crate) use carrier::{Carrier, Item, Keyword, Whole};
 pub(crate) use layout::{END, Frame, block, header};

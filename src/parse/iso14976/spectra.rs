@@ -1,12 +1,14 @@
 //! Photoelectron spectra from the blocks that hold one.
 
+use std::ops::Range;
+
 use super::abscissa::Axis;
 use super::block::Block;
 use super::experiment::Experiment;
 use super::keyword::{AnalyserMode, ExperimentMode, ScanMode};
 use super::signal::{intensity, kind};
-use super::{Skipped, known};
-use crate::parse::Source;
+use super::known;
+use crate::parse::{Skipped, Source};
 use crate::schema::{Conditions, Document, Spectrum};
 
 impl Experiment {
@@ -27,6 +29,34 @@ impl Experiment {
                     .map_err(|reason| skipped(block, reason))
             })
             .collect()
+    }
+
+    /// What the energies and the intensities of a block are called.
+    pub(in crate::parse) fn labels(&self, curve: usize) -> [String; 2] {
+        let Some(block) = self.blocks.get(curve) else {
+            return Default::default();
+        };
+        let variable = |index: usize| block.variables.get(index);
+        let abscissa = block.abscissa.as_ref().map(|abscissa| &abscissa.label);
+        let intensity = self.intensity_variable(curve).and_then(variable);
+        [abscissa.or(variable(0)), intensity]
+            .map(|label| label.map_or_else(String::new, |l| format!("{} ({})", l.label, l.units)))
+    }
+
+    /// Where the energy (field 0) or the intensity (field 1) of a row stands.
+    pub(in crate::parse) fn field_span(
+        &self,
+        source: &Source,
+        curve: usize,
+        row: usize,
+        field: usize,
+    ) -> Option<Range<usize>> {
+        let variable = match field {
+            0 if self.scan_mode == ScanMode::Regular => return None,
+            0 => 0,
+            _ => self.intensity_variable(curve)?,
+        };
+        self.value_span(source, curve, row, variable)
     }
 
     fn spectrum(&self, source: &Source, number: usize, b: &Block) -> Result<Spectrum, String> {
