@@ -10,6 +10,7 @@ mod csv_curves;
 mod error;
 mod figure;
 mod folder;
+pub mod jcamp_dx;
 mod read_back;
 mod report;
 #[cfg(test)]

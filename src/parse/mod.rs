@@ -14,6 +14,7 @@ mod dialect;
 mod evidence;
 mod header;
 mod header_line;
+pub mod jcamp_dx;
 mod layout;
 mod levels;
 mod metadata;
