@@ -13,6 +13,7 @@ mod error;
 mod figure;
 mod folder;
 pub mod iso14976;
+pub mod jcamp_dx;
 mod read_back;
 mod report;
 #[cfg(test)]

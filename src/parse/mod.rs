@@ -24,6 +24,7 @@ mod gaps;
 mod header;
 mod header_line;
 pub mod iso14976;
+pub mod jcamp_dx;
 mod layout;
 mod levels;
 mod line;

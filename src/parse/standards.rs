@@ -4,6 +4,7 @@ use std::ops::Range;
 use std::sync::Arc;
 
 use super::iso14976::{self, Experiment};
+use super::jcamp_dx::{self, Document};
 use super::parsed::{self, Column, Manner, Parsed};
 use super::role::{Hints, Role};
 use super::skipped::Skipped;
@@ -19,6 +20,7 @@ const LISTED: usize = 20;
 #[derive(Debug, Clone, PartialEq)]
 enum File {
     Iso14976(Arc<Experiment>),
+    JcampDx(Arc<Document>),
 }
 
 /// One curve of a file in an open standard.
@@ -34,18 +36,23 @@ impl File {
         if iso14976::is_like(source.text()) {
             return Some(iso14976::read(source).map(|file| Self::Iso14976(Arc::new(file))));
         }
+        if jcamp_dx::is_like(source.text()) {
+            return Some(jcamp_dx::read(source).map(|file| Self::JcampDx(Arc::new(file))));
+        }
         None
     }
 
     fn name(&self) -> &'static str {
         match self {
             Self::Iso14976(_) => "ISO 14976",
+            Self::JcampDx(_) => "JCAMP-DX",
         }
     }
 
     fn spectra(&self, source: &Source) -> Vec<Result<Spectrum, Skipped>> {
         match self {
             Self::Iso14976(file) => file.spectra(source),
+            Self::JcampDx(file) => file.spectra(source),
         }
     }
 
@@ -53,6 +60,14 @@ impl File {
     fn labels(&self, curve: usize) -> [String; 2] {
         match self {
             Self::Iso14976(file) => file.labels(curve),
+            Self::JcampDx(file) => {
+                file.blocks()
+                    .get(curve)
+                    .map_or_else(Default::default, |block| {
+                        ["XUNITS", "YUNITS"]
+                            .map(|label| block.text(label).unwrap_or_default().to_owned())
+                    })
+            }
         }
     }
 }
@@ -63,6 +78,8 @@ impl Curve {
     pub fn value_span(&self, source: &Source, row: usize, field: usize) -> Option<Range<usize>> {
         match &self.file {
             File::Iso14976(file) => file.field_span(source, self.index, row, field),
+            // The ordinate is variable 0, the abscissa of a pair variable 1.
+            File::JcampDx(file) => file.value_span(source, self.index, row, 1 - field.min(1)),
         }
     }
 }
@@ -87,15 +104,19 @@ pub(super) fn one_curve(
     every: bool,
 ) -> Option<Result<Parsed<Spectrum>, Vec<Problem>>> {
     let curves = curves(source, hints, every)?;
-    Some(curves.and_then(|mut curves| match (curves.len(), curves.pop()) {
-        (1, Some(only)) => Ok(only),
-        (several, _) => Err(vec![
-            Problem::new(format!("`{}` holds {several} curves", source.name())).with_help(format!(
-                "say which one is meant, as in {}; `bandrule look` lists them",
-                hints.setting("block = 1")
-            )),
-        ]),
-    }))
+    Some(
+        curves.and_then(|mut curves| match (curves.len(), curves.pop()) {
+            (1, Some(only)) => Ok(only),
+            (several, _) => Err(vec![
+                Problem::new(format!("`{}` holds {several} curves", source.name())).with_help(
+                    format!(
+                        "say which one is meant, as in {}; `bandrule look` lists them",
+                        hints.setting("block = 1")
+                    ),
+                ),
+            ]),
+        }),
+    )
 }
 
 fn parsed_curves(

@@ -6,8 +6,8 @@ use super::abscissa::Axis;
 use super::block::Block;
 use super::experiment::Experiment;
 use super::keyword::{AnalyserMode, ExperimentMode, ScanMode};
-use super::signal::{intensity, kind};
 use super::known;
+use super::signal::{intensity, kind};
 use crate::parse::{Skipped, Source};
 use crate::schema::{Conditions, Document, Spectrum};
 
