@@ -8,6 +8,7 @@ use std::io::Read;
 
 use encoding_rs::{UTF_16BE, UTF_16LE, WINDOWS_1252};
 use flate2::read::MultiGzDecoder;
+use rayon::prelude::*;
 
 use super::Problem;
 
@@ -73,14 +74,24 @@ pub(super) fn plain_text(bytes: Vec<u8>) -> Result<String, Vec<u8>> {
     }
 }
 
-/// Whether a text has control characters; bytes first, because texts are long.
+/// Whether a text has control characters; bytes first and in parallel, because texts are long.
 fn has_binary(text: &str) -> bool {
-    let odd = |&b: &u8| (b < 0x20 && !matches!(b, 9..=13 | 26)) || b == 0x7f;
     let bytes = text.as_bytes();
-    bytes
-        .chunks(4_096)
-        .any(|chunk| chunk.iter().filter(|b| odd(b)).count() > 0)
-        || (!bytes.is_ascii() && text.contains(is_binary))
+    let (odd, wide) = bytes
+        .par_chunks(1 << 20)
+        .map(odd_and_wide)
+        .reduce(|| (false, false), |a, b| (a.0 | b.0, a.1 | b.1));
+    odd || (wide && text.contains(is_binary))
+}
+
+/// Whether some bytes hold control characters, and whether they hold more than ASCII. Without
+/// branches, so that many bytes are looked at together.
+fn odd_and_wide(bytes: &[u8]) -> (bool, bool) {
+    let (odd, wide) = bytes.iter().fold((0u8, 0u8), |(odd, wide), &b| {
+        let control = u8::from(b < 0x20) & u8::from(b.wrapping_sub(9) > 4) & u8::from(b != 26);
+        (odd | control | u8::from(b == 0x7f), wide | (b & 0x80))
+    });
+    (odd != 0, wide != 0)
 }
 
 const GZIP: [u8; 2] = [0x1f, 0x8b];

@@ -101,9 +101,6 @@ pub(super) struct Dialect {
     pub numeric: Vec<bool>,
 }
 
-/// The share of numbers below which several fields explain nothing.
-const LEAST_SHARE: f64 = 0.1;
-
 /// Whether a line looks like numbers rather than names, whatever its delimiter.
 pub(super) fn looks_numeric(line: &str) -> bool {
     let words = line
@@ -129,14 +126,7 @@ pub(super) fn conclude(
             continue;
         }
         let new = explained(source, rows, delimiter);
-        // Rows of one field always agree: they only win over what explains nothing.
-        let rank = |one: &Explained| {
-            (
-                one.fields > 1 && one.share > LEAST_SHARE,
-                one.share,
-                one.fields,
-            )
-        };
+        let rank = |one: &Explained| (one.numbers, one.share, one.fields);
         let better = best.as_ref().is_none_or(|best| rank(&new) > rank(best));
         if better {
             best = Some(new);
@@ -168,6 +158,9 @@ pub(super) fn conclude(
 /// How well a delimiter explains the rows.
 struct Explained {
     delimiter: Delimiter,
+    /// Numbers in a row, times the share of the rows that have the most common number of fields.
+    numbers: f64,
+    /// The share of the cells that are numbers.
     share: f64,
     fields: usize,
     trailing: bool,
@@ -177,6 +170,7 @@ impl Default for Explained {
     fn default() -> Self {
         Self {
             delimiter: Delimiter::Blanks,
+            numbers: 0.0,
             share: 0.0,
             fields: 0,
             trailing: false,
@@ -184,8 +178,7 @@ impl Default for Explained {
     }
 }
 
-/// The share of the cells that are numbers (with a decimal comma too) times the share of the rows
-/// that have the most common number of fields.
+/// How well a delimiter explains the rows; a number may have a decimal comma too.
 fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> Explained {
     let (mut all, mut numbers) = (0u32, 0u32);
     let mut counts = BTreeMap::<usize, [u32; 2]>::new();
@@ -202,12 +195,12 @@ fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> Ex
     }
     let most = counts.into_iter().max_by_key(|&(_, [count, _])| count);
     let (fields, [count, open]) = most.unwrap_or_default();
-    let agreeing =
-        f64::from(count) / f64::from(u32::try_from(rows.len()).unwrap_or(u32::MAX).max(1));
+    let lines = f64::from(u32::try_from(rows.len()).unwrap_or(u32::MAX).max(1));
     let trailing = delimiter != Delimiter::Blanks && fields > 1 && open == count;
     Explained {
         delimiter,
-        share: f64::from(numbers) / f64::from(all.max(1)) * agreeing,
+        numbers: f64::from(numbers) / lines * f64::from(count) / lines,
+        share: f64::from(numbers) / f64::from(all.max(1)),
         fields: fields - usize::from(trailing),
         trailing,
     }

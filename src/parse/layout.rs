@@ -150,12 +150,24 @@ impl Layout {
         source
             .lines_from(start)
             .map(|line| line.start..line.end)
-            .filter(|line| self.lines.place(source.slice(line.clone())) == LinePlace::Row)
+            .filter(|line| self.is_row(source.slice(line.clone())))
     }
 
     /// The remembered rows: the number of each, in order.
     pub fn anchors(&self) -> impl ExactSizeIterator<Item = usize> + '_ {
         self.anchors.iter().map(|anchor| anchor.0)
+    }
+
+    /// The byte of a remembered row.
+    pub fn anchor_start(&self, anchor: usize) -> usize {
+        self.anchors
+            .get(anchor)
+            .map_or(usize::MAX, |anchor| anchor.1)
+    }
+
+    /// Whether a line from the first row on is a row.
+    pub fn is_row(&self, line: &str) -> bool {
+        self.lines.place(line) == LinePlace::Row
     }
 
     /// One row.

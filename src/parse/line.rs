@@ -45,16 +45,21 @@ impl Lines {
 
     /// What a line is.
     pub fn place(&self, line: &str) -> Place {
-        let bytes = line.as_bytes();
-        let first = bytes.iter().position(|b| !matches!(b, b' ' | b'\t'));
-        match first.map(|at| (bytes[at], bytes.get(at + 1))) {
-            Some((b'0'..=b'9', _)) => Place::Row,
-            Some((b'+' | b'-' | b'.', Some(b'0'..=b'9' | b'.'))) => Place::Row,
-            _ => self.slowly(line),
+        match begins_row(line.as_bytes()) {
+            true => Place::Row,
+            false => self.slowly(line),
         }
     }
 
     fn slowly(&self, line: &str) -> Place {
+        let first = line.trim_start_matches(BLANKS).bytes().next();
+        if first.is_some_and(|b| b.is_ascii_alphabetic()) && !self.may_be_name(first) {
+            // Most lines of a table of texts: neither marked, nor drawn, nor like any line above.
+            return match is_title(line) && !self.dialect.is_row(line) {
+                true => Place::Title,
+                false => Place::Row,
+            };
+        }
         if line.trim().is_empty() {
             Place::Blank
         } else if is_ruler(line) {
@@ -73,9 +78,24 @@ impl Lines {
         }
     }
 
+    /// Whether one of the lines above the rows begins with this sign.
+    fn may_be_name(&self, first: Option<u8>) -> bool {
+        self.names.iter().any(|name| name.bytes().next() == first)
+    }
+
     /// Where the text of a comment line starts.
     pub fn comment(&self, line: &str) -> Option<usize> {
         comment(line, &self.dialect)
+    }
+}
+
+/// Whether a line is a row by its first sign: it begins with a number.
+pub(super) fn begins_row(text: &[u8]) -> bool {
+    let first = text.iter().position(|b| !matches!(b, b' ' | b'\t'));
+    match first.map(|at| (text[at], text.get(at + 1))) {
+        Some((b'0'..=b'9', _)) => true,
+        Some((b'+' | b'-' | b'.', next)) => matches!(next, Some(b'0'..=b'9' | b'.')),
+        _ => false,
     }
 }
 

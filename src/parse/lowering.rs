@@ -304,8 +304,12 @@ impl Lowering<'_> {
         };
         let texts = texts.clone();
         let mut numbers = self.numbers(field);
+        let mut before: Option<(&str, Option<EnergyUnit>)> = None;
         for (row, (number, text)) in numbers.iter_mut().zip(texts.iter()).enumerate() {
-            match EnergyUnit::from_spelling(text).filter(|unit| unit.is_linear()) {
+            let known = before.filter(|(same, _)| *same == text);
+            let unit = known.map_or_else(|| EnergyUnit::from_spelling(text), |(_, unit)| unit);
+            before = Some((text, unit));
+            match unit.filter(|unit| unit.is_linear()) {
                 Some(unit) => *number = Energy::new(*number, unit).electronvolts(),
                 // A value that is not there needs no unit.
                 None if number.is_nan() => {}

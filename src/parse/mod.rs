@@ -33,6 +33,7 @@ mod lowering;
 mod metadata;
 mod number;
 mod parsed;
+mod plain_line;
 mod plain_table;
 mod problem;
 mod quantity_text;

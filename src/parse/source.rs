@@ -1,12 +1,13 @@
 //! A text with its name, and the one conversion from byte offsets to line and column.
 
 use std::fs::{self, File, Metadata};
-use std::io::{ErrorKind, Read};
+use std::io::ErrorKind;
 use std::ops::Range;
 use std::path::Path;
 use std::sync::{Arc, OnceLock};
 
 use memchr::memchr2;
+use rayon::prelude::*;
 use sha2::{Digest, Sha256};
 
 use super::Problem;
@@ -17,11 +18,13 @@ use crate::schema::SourceRecord;
 const ANCHOR_LINES: usize = 1_000;
 /// Bytes from the beginning in which lines are counted without anchors.
 const NEAR: usize = 1 << 16;
+/// Bytes of a file that one task reads.
+const READ_AT_ONCE: usize = 8 << 20;
 /// Characters of a line that an excerpt shows.
 const EXCERPT_CHARS: usize = 120;
 /// Characters shown before the span where a line is cut.
 const EXCERPT_BEFORE: usize = 40;
-const BOM: char = '\u{feff}';
+const BOM: [u8; 3] = [0xef, 0xbb, 0xbf];
 
 /// A text that was read, with its name and the record of its bytes.
 ///
@@ -87,15 +90,7 @@ impl Source {
         let file = File::open(path).map_err(unreadable)?;
         let metadata = file.metadata().map_err(unreadable)?;
         regular(path, &metadata)?;
-        let size = usize::try_from(metadata.len()).unwrap_or(usize::MAX);
-        let mut bytes = Vec::new();
-        bytes.try_reserve_exact(size).map_err(|_| {
-            Problem::new(format!("`{name}` has {size} bytes: more than memory holds"))
-        })?;
-        // No more than it had when it was opened: some files have no end.
-        file.take(metadata.len())
-            .read_to_end(&mut bytes)
-            .map_err(unreadable)?;
+        let bytes = read_whole(&file, metadata.len()).map_err(unreadable)?;
         Self::from_bytes(shown, bytes)
     }
 
@@ -231,6 +226,38 @@ fn record_of(shown: &str, bytes: &[u8]) -> SourceRecord {
     }
 }
 
+/// The bytes that a file had when it was opened: some files have no end. Read in parallel, because
+/// the first touch of so much memory takes longer than the copy.
+#[cfg(unix)]
+fn read_whole(file: &File, size: u64) -> std::io::Result<Vec<u8>> {
+    use std::os::unix::fs::FileExt;
+    let mut bytes = room(size)?;
+    bytes
+        .par_chunks_mut(READ_AT_ONCE)
+        .enumerate()
+        .try_for_each(|(index, part)| file.read_exact_at(part, (index * READ_AT_ONCE) as u64))?;
+    Ok(bytes)
+}
+
+/// The bytes that a file had when it was opened: some files have no end.
+#[cfg(not(unix))]
+fn read_whole(mut file: &File, size: u64) -> std::io::Result<Vec<u8>> {
+    let mut bytes = room(size)?;
+    std::io::Read::read_exact(&mut file, &mut bytes)?;
+    Ok(bytes)
+}
+
+/// Zeros to read into.
+fn room(size: u64) -> std::io::Result<Vec<u8>> {
+    let too_large = || std::io::Error::from(ErrorKind::OutOfMemory);
+    let size = usize::try_from(size).map_err(|_| too_large())?;
+    // Asked for first: making the zeros would abort.
+    Vec::<u8>::new()
+        .try_reserve_exact(size)
+        .map_err(|_| too_large())?;
+    Ok(vec![0; size])
+}
+
 fn regular(path: &Path, metadata: &Metadata) -> Result<(), Problem> {
     if metadata.is_file() {
         return Ok(());
@@ -257,8 +284,8 @@ fn lines(text: &str, start: usize) -> impl Iterator<Item = Line> + '_ {
     let bytes = text.as_bytes();
     let mut at = start;
     std::iter::from_fn(move || {
-        while text.get(at..).is_some_and(|rest| rest.starts_with(BOM)) {
-            at += BOM.len_utf8();
+        while bytes.get(at..).is_some_and(|rest| rest.starts_with(&BOM)) {
+            at += BOM.len();
         }
         let rest = bytes.get(at..).filter(|rest| !rest.is_empty())?;
         let length = memchr2(b'\n', b'\r', rest).unwrap_or(rest.len());

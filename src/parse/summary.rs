@@ -17,7 +17,7 @@ pub struct Summary {
     pub minimum: Option<f64>,
     /// The greatest of them.
     pub maximum: Option<f64>,
-    /// Their sum, compensated for rounding (Neumaier 1974).
+    /// Their sum, compensated for rounding (Knuth's two-sum).
     pub sum: Option<f64>,
     /// Their course over the rows, in up to 24 steps between the least and the greatest.
     pub picture: String,
@@ -52,10 +52,8 @@ impl Summary {
             least = least.min(value);
             most = most.max(value);
             let next = sum + value;
-            lost += match sum.abs() >= value.abs() {
-                true => (sum - next) + value,
-                false => (value - next) + sum,
-            };
+            let added = next - sum;
+            lost += (sum - (next - added)) + (value - added);
             sum = next;
         }
         let some = |value| (count > 0).then_some(value);

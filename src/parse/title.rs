@@ -22,7 +22,16 @@ pub(super) struct Title {
 /// Reads a title; `None` for any other line.
 pub(super) fn title(line: &str) -> Option<Title> {
     let text = line.trim();
-    let name = text.find(|c: char| c.is_ascii_digit() || matches!(c, '=' | ':' | '#'))?;
+    if !matches!(
+        text.as_bytes().first(),
+        Some(b'k' | b'K' | b'b' | b'B' | b's' | b'S' | b'i' | b'I')
+    ) {
+        return None;
+    }
+    let name = text
+        .bytes()
+        .take(LONGEST + 1)
+        .position(|b| b.is_ascii_digit() || matches!(b, b'=' | b':' | b'#'))?;
     let counted = counted(text[..name].trim())?;
     let mut words = text[name..]
         .split(separates)
@@ -44,6 +53,9 @@ pub(super) fn title(line: &str) -> Option<Title> {
         point,
     })
 }
+
+/// The longest name of what a title counts, in bytes.
+const LONGEST: usize = 20;
 
 fn counted(name: &str) -> Option<Counted> {
     let name = name.to_lowercase();

@@ -9,7 +9,9 @@ use super::cells::{self, NoRow};
 use super::dialect::{Delimiter, Dialect};
 use super::header_line::Name;
 use super::layout::Layout;
+use super::line;
 use super::number::{Decimal, has_decimal_comma, is_missing, number_in};
+use super::plain_line::PlainLines;
 use super::problem::{Problems, visible};
 use super::{Problem, Source};
 use crate::schema::Texts;
@@ -90,7 +92,7 @@ pub(super) struct Read {
 }
 
 /// The part of a column that a task fills.
-enum Slot<'a> {
+pub(super) enum Slot<'a> {
     Numbers(&'a mut [f64]),
     Whole(&'a mut [i64], Content),
     Texts(Texts),
@@ -212,12 +214,27 @@ struct Reader<'a> {
 impl Reader<'_> {
     fn read(&self, anchor: usize, rows: usize, mut slots: Vec<Slot<'_>>) -> Done {
         let mut done = Done::default();
-        let lines = self.layout.rows_at(self.source, anchor).take(rows);
-        for (row, line) in lines.enumerate() {
-            let bytes = self.source.slice(line.clone()).as_bytes();
-            if !self.plainly(bytes, row, &mut slots) {
-                self.carefully(&line, row, &mut slots, &mut done);
+        let plain = PlainLines::new(self.source.text(), &self.layout.dialect, &self.plan);
+        let text = self.source.text().as_bytes();
+        let (mut at, mut row) = (self.layout.anchor_start(anchor), 0);
+        while row < rows {
+            let plainly = |at: usize, slots: &mut [Slot<'_>]| plain.as_ref()?.read(at, row, slots);
+            let begins = line::begins_row(&text[at..]);
+            if begins && let Some(next) = plainly(at, &mut slots) {
+                (at, row) = (next, row + 1);
+                continue;
             }
+            let Some(line) = self.source.lines_from(at).next() else {
+                break;
+            };
+            let span = line.start..line.end;
+            if self.layout.is_row(self.source.slice(span.clone())) {
+                if begins || plainly(line.start, &mut slots).is_none() {
+                    self.carefully(&span, row, &mut slots, &mut done);
+                }
+                row += 1;
+            }
+            at = line.next;
         }
         let texts = |slot| match slot {
             Slot::Texts(texts) => Some(texts),
@@ -225,84 +242,6 @@ impl Reader<'_> {
         };
         done.texts = slots.into_iter().map(texts).collect();
         done
-    }
-
-    /// Reads a line that is written plainly; `false` where it is not, with nothing kept of it.
-    fn plainly(&self, line: &[u8], row: usize, slots: &mut [Slot<'_>]) -> bool {
-        let dialect = &self.layout.dialect;
-        if dialect.decimal != Decimal::Point || dialect.delimiter == Delimiter::Pipe {
-            return false;
-        }
-        let read = match dialect.delimiter.byte() {
-            None => self.plain_words(line, row, slots),
-            Some(byte) => self.plain_cells(line, byte, row, slots),
-        };
-        if read.is_none() {
-            for slot in slots.iter_mut() {
-                if let Slot::Texts(texts) = slot {
-                    texts.truncate(row);
-                }
-            }
-        }
-        read.is_some()
-    }
-
-    fn plain_words(&self, line: &[u8], row: usize, slots: &mut [Slot<'_>]) -> Option<()> {
-        let mut rest = line;
-        for slot in &self.plan {
-            rest = after_blanks(rest);
-            let slot = slot.and_then(|slot| slots.get_mut(slot));
-            rest = match slot {
-                Some(Slot::Texts(texts)) => {
-                    let (word, after) = word(rest)?;
-                    texts.push(word);
-                    after
-                }
-                None => word(rest)?.1,
-                Some(slot) => number_slot(rest, row, slot)?,
-            };
-            if !matches!(rest.first(), None | Some(b' ' | b'\t')) {
-                return None;
-            }
-        }
-        after_blanks(rest).is_empty().then_some(())
-    }
-
-    fn plain_cells(
-        &self,
-        line: &[u8],
-        delimiter: u8,
-        row: usize,
-        slots: &mut [Slot<'_>],
-    ) -> Option<()> {
-        let mut rest = line;
-        let last = self.plan.len() - 1;
-        for (field, slot) in self.plan.iter().enumerate() {
-            rest = after_spaces(rest);
-            let slot = slot.and_then(|slot| slots.get_mut(slot));
-            rest = match slot {
-                Some(Slot::Texts(texts)) => {
-                    let (text, after) = cell(rest, delimiter)?;
-                    texts.push(text);
-                    after
-                }
-                None => cell(rest, delimiter)?.1,
-                Some(Slot::Numbers(numbers)) if rest.first() == Some(&delimiter) => {
-                    numbers[row] = f64::NAN;
-                    rest
-                }
-                Some(slot) => after_spaces(number_slot(rest, row, slot)?),
-            };
-            rest = match (field == last, rest.split_first()) {
-                (false, Some((&byte, after))) if byte == delimiter => after,
-                (true, None) => rest,
-                (true, Some((&byte, after))) if byte == delimiter => {
-                    return after_spaces(after).is_empty().then_some(());
-                }
-                _ => return None,
-            };
-        }
-        Some(())
     }
 
     fn carefully(&self, line: &Range<usize>, row: usize, slots: &mut [Slot<'_>], done: &mut Done) {
@@ -361,56 +300,8 @@ impl Reader<'_> {
     }
 }
 
-fn after_blanks(text: &[u8]) -> &[u8] {
-    let at = text.iter().position(|b| !matches!(b, b' ' | b'\t'));
-    &text[at.unwrap_or(text.len())..]
-}
-
-fn after_spaces(text: &[u8]) -> &[u8] {
-    let at = text.iter().position(|&b| b != b' ');
-    &text[at.unwrap_or(text.len())..]
-}
-
-/// A word and what follows it; not where it might begin a remark or hold more than ASCII.
-fn word(text: &[u8]) -> Option<(&str, &[u8])> {
-    let end = text.iter().position(|b| matches!(b, b' ' | b'\t'));
-    let (word, after) = text.split_at(end.unwrap_or(text.len()));
-    plain_text(word)
-        .filter(|word| !word.is_empty())
-        .map(|word| (word, after))
-}
-
-/// A cell without the blanks around it, and what follows it.
-fn cell(text: &[u8], delimiter: u8) -> Option<(&str, &[u8])> {
-    let end = memchr::memchr(delimiter, text).unwrap_or(text.len());
-    let (cell, after) = text.split_at(end);
-    plain_text(cell.trim_ascii()).map(|text| (text, after))
-}
-
-fn plain_text(text: &[u8]) -> Option<&str> {
-    let remark = matches!(text.first(), Some(b'#' | b'!'));
-    let plain = text.is_ascii() && !text.contains(&b'"') && !remark;
-    std::str::from_utf8(text).ok().filter(|_| plain)
-}
-
-/// Reads the number that begins a text into its column, and returns what follows it.
-fn number_slot<'t>(text: &'t [u8], row: usize, slot: &mut Slot<'_>) -> Option<&'t [u8]> {
-    let (value, length) = fast_float2::parse_partial::<f64, _>(text).ok()?;
-    let plain = |b: &u8| matches!(b, b'0'..=b'9' | b'.' | b'-' | b'+' | b'e' | b'E');
-    let (token, after) = text.split_at(length);
-    if !value.is_finite() || !token.iter().all(plain) {
-        return None;
-    }
-    match slot {
-        Slot::Numbers(numbers) => numbers[row] = value,
-        Slot::Whole(whole, _) => whole[row] = as_whole(value)?,
-        Slot::Texts(_) => return None,
-    }
-    Some(after)
-}
-
 /// A whole number below 2^53.
-fn as_whole(value: f64) -> Option<i64> {
+pub(super) fn as_whole(value: f64) -> Option<i64> {
     const LARGEST: f64 = 9_007_199_254_740_992.0;
     #[allow(clippy::cast_possible_truncation)]
     (value.fract() == 0.0 && value.abs() < LARGEST).then_some(value as i64)
