@@ -167,7 +167,7 @@ fn read_document(source: Source, wanted: Option<Kind>) -> Result<AnyParsed, Prob
 
 /// The one kind whose needed roles the columns have.
 fn conclude(source: &Source, layout: &Layout, hints: &Hints) -> Result<Kind, Problem> {
-    let mut fitting = Vec::new();
+    let (mut fitting, mut totals) = (Vec::new(), false);
     let mut best: Option<(usize, Kind, Option<Problem>)> = None;
     for kind in Kind::ALL {
         let names = header_line::find(source, layout, kind, hints);
@@ -182,12 +182,18 @@ fn conclude(source: &Source, layout: &Layout, hints: &Hints) -> Result<Kind, Pro
             .filter(|role| kind.roles().contains(role))
             .collect();
         let has = |role: &super::Role| roles.contains(role);
+        totals |= has(&super::Role::Density);
         if kind.needs().iter().any(|needed| needed.iter().all(has)) {
             fitting.push((kind, roles.len()));
         }
         if best.as_ref().is_none_or(|(known, ..)| roles.len() > *known) {
             best = Some((roles.len(), kind, problem));
         }
+    }
+    // Letters may be elements: a density without a total loses to a curve.
+    let by_letters = |kind: Kind| kind == Kind::Density && !totals;
+    if fitting.iter().any(|&(kind, _)| kind == Kind::Spectrum) {
+        fitting.retain(|&(kind, _)| !by_letters(kind));
     }
     let most = fitting.iter().map(|&(_, known)| known).max().unwrap_or(0);
     let kinds: Vec<Kind> = fitting

@@ -65,4 +65,14 @@ pub(super) fn equal_blocks(layout: &Layout) -> Option<usize> {
     (even && layout.rows == (layout.breaks.len() + 1) * length).then_some(length)
 }
 
+/// Whether a column has one value in each of the blocks that blank lines make.
+pub(super) fn is_constant(layout: &Layout, column: &[f64]) -> bool {
+    let one = |block: &[f64]| {
+        block
+            .iter()
+            .all(|value| value.to_bits() == block[0].to_bits())
+    };
+    equal_blocks(layout).is_some_and(|length| column.chunks(length).all(one))
+}
+
 const MARKS: [char; 8] = ['#', '!', '%', '@', '/', ';', ' ', '\t'];

@@ -46,6 +46,13 @@ pub(super) fn split(
     if let Some(cells) = exact(&plain, dialect).filter(|_| remark.is_none()) {
         return Ok(cells);
     }
+    if dialect.delimiter == Delimiter::Pipe {
+        // Strokes at both ends may stand for blank cells.
+        let whole = delimited(line, line, row.start, b'|').map_err(NoRow::Quotes)?;
+        if let Some(cells) = exact(&whole, dialect) {
+            return Ok(cells);
+        }
+    }
     if let Some(at) = remark {
         let kept = &plain[..at];
         if let Some(mut cells) = exact(kept, dialect) {
@@ -55,8 +62,9 @@ pub(super) fn split(
     }
     if dialect.delimiter == Delimiter::Blanks {
         let kept = &plain[..remark.unwrap_or(plain.len())];
-        let others = apart(source, kept, row.start, dialect)
-            .or_else(|| by_position(source, kept, row.start, dialect))
+        let pieces = apart(source, kept);
+        let others = aligned(&pieces, row.start, dialect)
+            .or_else(|| by_position(source, &pieces, row.start, dialect))
             .or_else(|| with_text_after(source, kept, dialect));
         if let Some(cells) = others {
             return Ok(cells);
@@ -80,78 +88,65 @@ fn exact(spans: &[Range<usize>], dialect: &Dialect) -> Option<Cells> {
 }
 
 /// Takes apart numbers that fill their fields, as in `-12.34567890-13.45678901`.
-fn apart(
-    source: &Source,
-    spans: &[Range<usize>],
-    start: usize,
-    dialect: &Dialect,
-) -> Option<Cells> {
+fn apart(source: &Source, spans: &[Range<usize>]) -> Vec<Range<usize>> {
     let mut pieces = Vec::new();
     for span in spans {
         match grown_together(source.slice(span.clone())) {
             None => pieces.push(span.clone()),
             Some(parts) => {
-                pieces.extend(
-                    parts
-                        .into_iter()
-                        .map(|p| span.start + p.start..span.start + p.end),
-                );
+                let shifted = |p: Range<usize>| span.start + p.start..span.start + p.end;
+                pieces.extend(parts.into_iter().map(shifted));
             }
         }
     }
+    pieces
+}
+
+/// Numbers that were taken apart as the cells of a row: they end where their columns do.
+fn aligned(pieces: &[Range<usize>], start: usize, dialect: &Dialect) -> Option<Cells> {
     let in_line = |(piece, extent): (&Range<usize>, &Range<usize>)| piece.end - start == extent.end;
     let aligned = dialect
         .extents
         .as_ref()
         .is_none_or(|extents| pieces.iter().zip(extents).all(in_line));
-    (pieces.len() == dialect.fields && pieces.len() > spans.len() && aligned).then_some(Cells {
-        spans: pieces,
+    (pieces.len() == dialect.fields && aligned).then(|| Cells {
+        spans: pieces.to_vec(),
         left_out: None,
     })
 }
 
+/// Numbers that may have grown together.
+const MOST_TOGETHER: usize = 100;
+
 /// The parts of a text that is several numbers with the same number of decimals.
 pub(super) fn grown_together(text: &str) -> Option<Vec<Range<usize>>> {
     let bytes = text.as_bytes();
-    if bytes.iter().filter(|&&b| b == b'.').count() < 2 {
+    let of_numbers = |&b: &u8| b.is_ascii_digit() || matches!(b, b'.' | b'-' | b'+');
+    let points = bytes.iter().filter(|&&b| b == b'.').count();
+    if points < 2 || points > MOST_TOGETHER || !bytes.iter().all(of_numbers) {
         return None;
     }
-    let decimals = |part: &str| -> Option<usize> {
-        let (_, fraction) = part.split_once('.')?;
-        Some(fraction.bytes().take_while(u8::is_ascii_digit).count())
-    };
+    let decimals = text.len() - text.rfind('.')? - 1;
     let mut cuts = vec![0];
     for (at, pair) in bytes.windows(2).enumerate() {
-        if matches!(pair[1], b'-' | b'+') && pair[0].is_ascii_digit() {
+        let last = cuts[cuts.len() - 1];
+        // A number ends so many digits after its point.
+        let point = text[last..=at].find('.').map(|point| last + point);
+        let full = point.is_some_and(|point| at == point + decimals);
+        if full && (pair[1].is_ascii_digit() || matches!(pair[1], b'-' | b'+')) {
             cuts.push(at + 1);
         }
     }
-    if cuts.len() == 1 {
-        cuts = unsigned_cuts(text)?;
-    }
     cuts.push(text.len());
     let parts: Vec<Range<usize>> = cuts.windows(2).map(|cut| cut[0]..cut[1]).collect();
-    let wanted = decimals(&text[parts[0].clone()])?;
     let alike = parts.iter().all(|part| {
         let part = &text[part.clone()];
-        wanted > 0
-            && decimals(part) == Some(wanted)
-            && number_in(part, super::number::Decimal::Point).is_some()
+        let digits = part
+            .split_once('.')
+            .is_some_and(|(_, f)| f.len() == decimals);
+        decimals > 0 && digits && number_in(part, super::number::Decimal::Point).is_some()
     });
     (parts.len() > 1 && alike).then_some(parts)
-}
-
-/// Where numbers without a sign between them begin, by the decimals of the last one.
-fn unsigned_cuts(text: &str) -> Option<Vec<usize>> {
-    let decimals = text.len() - text.rfind('.')? - 1;
-    let points: Vec<usize> = text.match_indices('.').map(|(at, _)| at).collect();
-    let ends = points[..points.len() - 1]
-        .iter()
-        .map(|at| at + 1 + decimals);
-    let cuts: Vec<usize> = [0].into_iter().chain(ends).collect();
-    // Every cut leaves a digit before the next point.
-    let room = cuts.iter().zip(&points).all(|(cut, point)| cut < point);
-    room.then_some(cuts)
 }
 
 /// Puts the words of a short row into the columns that they stand in.
@@ -224,9 +219,9 @@ pub(super) fn extents(
     let mut whole = 0;
     for row in rows {
         let line = source.slice(row.clone());
-        let spans = spans(line, 0, delimiter).ok()?;
-        let together = |span: &Range<usize>| grown_together(&line[span.clone()]).is_some();
-        if spans.len() != fields || spans.iter().any(together) {
+        let at = |text: &str| span_in(line, text, 0);
+        let spans: Vec<Range<usize>> = rough(line, delimiter).into_iter().map(at).collect();
+        if spans.len() != fields {
             continue;
         }
         if line.contains('\t') || !line.is_ascii() {
@@ -284,11 +279,21 @@ pub(super) fn spans(
         let words = line.split(BLANKS).filter(|word| !word.is_empty());
         return Ok(words.map(|word| span_in(line, word.trim(), base)).collect());
     };
-    let mut spans = Vec::new();
-    let mut rest = match delimiter {
+    let rest = match delimiter {
         Delimiter::Pipe => unframed(line),
         _ => line,
     };
+    delimited(line, rest, base, byte)
+}
+
+/// The same for a part of a line that a character delimits.
+fn delimited(
+    line: &str,
+    mut rest: &str,
+    base: usize,
+    byte: u8,
+) -> Result<Vec<Range<usize>>, Unquotable> {
+    let mut spans = Vec::new();
     let end = rest.as_ptr().addr() - line.as_ptr().addr() + rest.len();
     loop {
         let (content, length) = if rest.starts_with('"') {
@@ -314,11 +319,10 @@ pub(super) fn spans(
 
 /// A line without the strokes at both its ends.
 fn unframed(line: &str) -> &str {
-    let trimmed = line.trim_matches(BLANKS);
-    match trimmed.strip_prefix('|') {
-        Some(rest) => rest.strip_suffix('|').unwrap_or(rest),
-        None => line,
-    }
+    let inside = line.trim_matches(BLANKS).strip_prefix('|');
+    inside
+        .and_then(|rest| rest.strip_suffix('|'))
+        .unwrap_or(line)
 }
 
 /// The content of the quoted cell that starts a text, and the length of its field.

@@ -45,10 +45,18 @@ pub(super) fn read(cell: &str, kind: Kind) -> Reading {
             ..Reading::default()
         };
     }
-    let Ok(("", parts)) = parts(&cell) else {
-        return Reading::default();
-    };
     let mut reading = Reading::default();
+    // A unit after `in` may have a stroke of its own.
+    let cell = match cell.rsplit_once(" in ") {
+        Some((head, unit)) if unit.contains('/') && is_any_unit(unit.trim()) => {
+            reading.units.push(unit.trim().to_owned());
+            head
+        }
+        _ => &cell,
+    };
+    let Ok(("", parts)) = parts(cell) else {
+        return reading;
+    };
     let mut name = String::new();
     for part in parts {
         match part {
@@ -174,7 +182,7 @@ fn read_name(name: &str, kind: Kind, reading: &mut Reading) {
     };
     reading.role = forms::role(&tags, kind);
     reading.tags.clone_from(&tags);
-    reading.counts = reading.role == Some(Role::Intensity)
+    reading.counts = matches!(reading.role, Some(Role::Intensity | Role::Sweep))
         && tags.contains(&Tag::Counts)
         && !tags.contains(&Tag::Rate);
     if reading.role == Some(Role::Energy) {
@@ -203,6 +211,10 @@ fn without_unit<'a>(name: &'a str, units: &mut Vec<String>) -> &'a str {
         }
     }
     match name.rsplit_once(['_', ' ']) {
+        Some((head, "counts")) if name.ends_with("_counts") && is_intensity(head) => {
+            units.push("counts".to_owned());
+            head
+        }
         Some((head, unit)) if is_suffix_unit(unit) && !head.trim().is_empty() => {
             units.push(unit.to_owned());
             head.trim_end_matches(['_', ' '])
@@ -211,12 +223,19 @@ fn without_unit<'a>(name: &'a str, units: &mut Vec<String>) -> &'a str {
     }
 }
 
-/// Whether the last piece of a name is a unit. `K` is not (`E_K`), nor is `counts`, which is a name.
+/// Whether a name is that of an intensity or a sweep without the word "counts".
+fn is_intensity(name: &str) -> bool {
+    let tags = tags(name, Kind::Spectrum).unwrap_or_default();
+    tags.contains(&Tag::Sweep) || tags.contains(&Tag::Intensity)
+}
+
+/// Whether the last piece of a name is a unit. `K` is not (`E_K`), nor is `counts`, which is a name;
+/// `cts` is both.
 /// `mev` and `kev` are, so that they are refused as units rather than overlooked.
 fn is_suffix_unit(piece: &str) -> bool {
     let intensity = IntensityUnit::from_spelling(piece);
     (EnergyUnit::from_spelling(piece).is_some() && piece != "K")
-        || intensity.is_some_and(|unit| unit != IntensityUnit::Counts)
+        || intensity.is_some_and(|unit| unit != IntensityUnit::Counts || piece == "cts")
         || matches!(piece.to_ascii_lowercase().as_str(), "mev" | "kev")
 }
 

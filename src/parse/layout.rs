@@ -210,8 +210,8 @@ fn sample(source: &Source) -> Vec<Range<usize>> {
                 !text.trim().is_empty() && !line::is_aside(text)
             })
     };
-    let starts = |span: &Range<usize>| !line::starts_rows(source.slice(span.clone()));
-    let numeric: Vec<_> = spans().skip_while(starts).take(SAMPLE_ROWS).collect();
+    let before = |span: &Range<usize>| !line::tells_dialect(source.slice(span.clone()));
+    let numeric: Vec<_> = spans().skip_while(before).take(SAMPLE_ROWS).collect();
     match numeric.is_empty() {
         true => spans().take(SAMPLE_ROWS).collect(),
         false => numeric,

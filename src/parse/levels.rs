@@ -215,9 +215,14 @@ fn blocks(lowering: &mut Lowering<'_>, document: &mut Levels) {
     }
     let has_k =
         document.k_index.is_some() || document.k_x.is_some() || document.k_distance.is_some();
+    let apart = [&document.k_x, &document.k_y, &document.k_z];
+    let mut apart = apart.into_iter().flatten();
+    let apart = apart.all(|column| blocks::is_constant(layout, column));
     let counted = match (has_k, document.band.is_some()) {
         (true, false) => Some((&mut document.band, "band")),
-        (false, true) => Some((&mut document.k_index, "k-index")),
+        (_, true) if document.k_index.is_none() && apart => {
+            Some((&mut document.k_index, "k-index"))
+        }
         _ => None,
     };
     if let (Some((slot, what)), Some(numbers)) = (counted, blocks::by_blanks(layout)) {

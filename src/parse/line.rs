@@ -168,6 +168,11 @@ pub(super) fn starts_rows(line: &str) -> bool {
     dialect::looks_numeric(line) && !is_statement(line) && !is_title(line)
 }
 
+/// Whether a line may be a row that tells something of the dialect.
+pub(super) fn tells_dialect(line: &str) -> bool {
+    dialect::has_numbers(line) && !is_statement(line) && !is_title(line)
+}
+
 /// Whether a line without a comment mark is a statement, such as `Sweeps: 10` or `T = 300 K`.
 pub(super) fn is_statement(line: &str) -> bool {
     let text = line.trim_start_matches(BLANKS);

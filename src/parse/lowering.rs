@@ -315,8 +315,11 @@ impl Lowering<'_> {
                 None if number.is_nan() => {}
                 None => {
                     let (source, layout) = (self.source, &self.table.layout);
+                    let Some(span) = layout.cell(source, row, units) else {
+                        // The row itself is refused.
+                        continue;
+                    };
                     self.problems.push_with(|| {
-                        let span = layout.cell(source, row, units).unwrap_or(0..0);
                         Problem::new(format!("`{text}` is not the unit of an energy"))
                             .at(source.place(span))
                             .with_help(

@@ -273,6 +273,8 @@ impl Metadata {
         let rest = relation.map_or(rest, |(before, ..)| before);
         let unit = rest.trim().strip_prefix("in ").map(str::trim);
         if let Some(unit) = unit {
+            // The sentence may end with the point of `a.u.`
+            let unit = if unit == "a.u" { "a.u." } else { unit };
             match about {
                 UnitOf::Intensity => self.intensity_unit(unit, place),
                 _ => self.energy_unit(unit, place),

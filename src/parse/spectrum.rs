@@ -67,6 +67,7 @@ fn intensities(lowering: &mut Lowering<'_>) -> Option<(Evidence<IntensityUnit>, 
         return Some((unit, lowering.numbers(field)));
     }
     let fields = lowering.table.fields_of(Role::Sweep);
+    all_sweeps(lowering, &fields)?;
     let units: Vec<Option<_>> = fields
         .iter()
         .map(|&field| unit(lowering, Role::Sweep, field))
@@ -89,6 +90,35 @@ fn intensities(lowering: &mut Lowering<'_>) -> Option<(Evidence<IntensityUnit>, 
         .map(|&field| lowering.numbers(field))
         .collect();
     Some((first.clone(), together(lowering, &columns, first.value)))
+}
+
+/// Sweeps that the header numbers must be all there: a sum without one is no sum.
+fn all_sweeps(lowering: &mut Lowering<'_>, fields: &[usize]) -> Option<()> {
+    if lowering.hints.columns.contains_key(&Role::Sweep) {
+        return Some(());
+    }
+    let number = |&field: &usize| {
+        let label = &lowering.table.names[field].reading.label;
+        let digits = label.trim_start_matches(|c: char| !c.is_ascii_digit());
+        digits.parse::<usize>().ok()
+    };
+    let mut numbers: Vec<usize> = fields.iter().filter_map(number).collect();
+    numbers.sort_unstable();
+    let first = numbers.first().copied().unwrap_or(1);
+    let whole = first <= 1 && numbers.iter().copied().eq(first..first + fields.len());
+    if !whole {
+        let list: Vec<String> = numbers.iter().map(ToString::to_string).collect();
+        let problem = Problem::new(format!(
+            "the columns of sweeps are numbered {}: not every sweep is known",
+            list.join(", ")
+        ));
+        let setting = lowering.hints.setting("column.sweep = \"2-4\"");
+        let place = lowering.table.place_of(lowering.source, fields[0]);
+        lowering.problems.push(problem.at(place).with_help(format!(
+            "name the missing columns alike, or say which are to be added, as in {setting}"
+        )));
+    }
+    whole.then_some(())
 }
 
 fn unit(lowering: &mut Lowering<'_>, role: Role, field: usize) -> Option<Evidence<IntensityUnit>> {

@@ -65,10 +65,10 @@ fn levels_with_everything() {
         .collect();
     insta::assert_snapshot!(steps.join("\n"), @r"
     read: 2 rows of 11 fields separated by commas; names on line 5
-    convert: column 8 (energy-mean-field) from Ha to eV: the header cell `E_KS` on line 5; Ha by the comment on line 2
+    convert: column 8 (energy-mean-field) from Ha to eV: the header cell `E_KS` on line 5; Ha by the comment `# energies in Ha relative to the Fermi level` on line 2
     convert: column 9 (energy-quasiparticle) from Ha to eV: the header cell `E_QP (Ha)` on line 5
     leave out: column 11 `note`: not a name that is known here
-    reference: fermi by the comment on line 2
+    reference: fermi by the comment `# energies in Ha relative to the Fermi level` on line 2
     ");
     let place = parsed.place_of(0, Role::EnergyQuasiparticle).unwrap();
     assert_eq!((place.line, place.column), (6, 24));
@@ -215,8 +215,8 @@ fn refusals_of_levels() {
       help: write the number there; a row that has none may be removed on purpose, and `#` before a line makes it a comment
     ");
     insta::assert_snapshot!(refused("# energies in Ha\nk,E_QP (eV)\n1,-5\n", &hints()), @r"
-    levels.csv:2:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV)` on line 2, and as Ha by the comment on line 1
-      levels.csv:1:3: the comment on line 1
+    levels.csv:2:3: the unit of energy-quasiparticle is given as eV by the header cell `E_QP (eV)` on line 2, and as Ha by the comment `# energies in Ha` on line 1
+      levels.csv:1:3: the comment `# energies in Ha` on line 1
       help: find out which one is true and remove or correct the other
     ");
     insta::assert_snapshot!(refused("k,E_QP (eV) [Ha]\n1,-5\n", &hints()), @r"
@@ -273,8 +273,8 @@ fn refusals_of_curves() {
       help: find out which one is true and remove or correct the other
     ");
     insta::assert_snapshot!(refused_curve("# reference: vacuum\nE - E_F (eV),counts\n1,2\n"), @r"
-    curve.txt:2:1: the zero of the energies is given as fermi by the header cell `E - E_F (eV)` on line 2, and as vacuum by the comment on line 1
-      curve.txt:1:3: the comment on line 1
+    curve.txt:2:1: the zero of the energies is given as fermi by the header cell `E - E_F (eV)` on line 2, and as vacuum by the comment `# reference: vacuum` on line 1
+      curve.txt:1:3: the comment `# reference: vacuum` on line 1
       help: find out which one is true and remove or correct the other
     ");
     insta::assert_snapshot!(refused_curve("# nothing here\n"), @r"

@@ -104,7 +104,7 @@ fn a_result_is_replaced_only_where_asked_and_is_the_same_for_any_number_of_threa
         (again.status.code(), text(&again.stdout)),
         (Some(2), String::new())
     );
-    insta::assert_snapshot!(text(&again.stderr), @"error: out/result.json exists already: choose another folder, or ask for the old result to be replaced (--replace)");
+    insta::assert_snapshot!(text(&again.stderr), @"error: out/result.json exists already: choose another name, or ask for the old one to be replaced (--replace)");
     assert!(contents(&out) == first, "nothing is changed");
 
     let replaced = run("2", &["--replace"]);

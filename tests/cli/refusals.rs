@@ -78,8 +78,8 @@ fn two_units_in_comment_and_header() {
         "# k in units",
         "# energies in eV\n# k in units",
     );
-    insta::assert_snapshot!(message, @r#"
-    error: the unit of energy-mean-field is given as Ha by the header cell `E_MF (Ha)` on line 6, and as eV by the comment on line 4
+    insta::assert_snapshot!(message, @r"
+    error: the unit of energy-mean-field is given as Ha by the header cell `E_MF (Ha)` on line 6, and as eV by the comment `# energies in eV` on line 4
      --> levels.csv:6:25
       |
     6 | ik,kx,ky,kz,weight,band,E_MF (Ha),E_QP (Ha),occupation
@@ -88,11 +88,11 @@ fn two_units_in_comment_and_header() {
      ::: levels.csv:4:3
       |
     4 | # energies in eV
-      |   ^^^^^^^^^^^^^^ the comment on line 4
+      |   ^^^^^^^^^^^^^^ the comment `# energies in eV` on line 4
       |
       = help: find out which one is true and remove or correct the other
 
-    error: the unit of energy-quasiparticle is given as Ha by the header cell `E_QP (Ha)` on line 6, and as eV by the comment on line 4
+    error: the unit of energy-quasiparticle is given as Ha by the header cell `E_QP (Ha)` on line 6, and as eV by the comment `# energies in eV` on line 4
      --> levels.csv:6:35
       |
     6 | ik,kx,ky,kz,weight,band,E_MF (Ha),E_QP (Ha),occupation
@@ -101,10 +101,10 @@ fn two_units_in_comment_and_header() {
      ::: levels.csv:4:3
       |
     4 | # energies in eV
-      |   ^^^^^^^^^^^^^^ the comment on line 4
+      |   ^^^^^^^^^^^^^^ the comment `# energies in eV` on line 4
       |
       = help: find out which one is true and remove or correct the other
-    "#);
+    ");
 }
 
 #[test]

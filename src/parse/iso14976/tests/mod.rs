@@ -1,6 +1,7 @@
 //! The reader on the files in `fixtures/iso14976/`.
 
 use super::*;
+use crate::parse::Skipped;
 use crate::quantity::{AxisKind, Reference};
 use crate::schema::{IntensityKind, Spectrum};
 
