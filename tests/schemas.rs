@@ -7,9 +7,12 @@ use std::path::{Path, PathBuf};
 
 use bandrule::compare::{Study, compare};
 use bandrule::export;
-use bandrule::parse::{Hints, Source, read_levels, read_spectrum};
+use bandrule::parse::{Hints, Source, read_any, read_levels, read_spectrum};
 use bandrule::quantity::Reference;
-use bandrule::schema::{Document, Levels, ResultDocument, Spectrum, json_schema};
+use bandrule::schema::{
+    Density, Dispersion, Document, Gaps, Levels, Look, ResultDocument, Series, Spectrum,
+    json_schema,
+};
 use jsonschema::draft202012;
 use serde_json::{Value, json};
 
@@ -103,9 +106,77 @@ fn is_current<T: Document>() {
 fn schemas_are_current_and_schemas() {
     is_current::<Levels>();
     is_current::<Spectrum>();
+    is_current::<Density>();
+    is_current::<Dispersion>();
+    is_current::<Gaps>();
+    is_current::<Series>();
+    is_current::<Look>();
     is_current::<ResultDocument>();
     let files = fs::read_dir(root().join("schemas")).unwrap();
-    assert_eq!(files.count(), 3, "no other file among the schemas");
+    assert_eq!(files.count(), 8, "no other file among the schemas");
+}
+
+/// A small table of each kind that the demo has not.
+const TABLES: [(&str, &str); 5] = [
+    (
+        "levels",
+        "# quasiparticle energies in Ha\nkpath,band 1,band 2\n0,-0.5,0.5\n1,nan,0.25\n",
+    ),
+    (
+        "density",
+        "E - E_F (eV),DOS (states/eV),Zn d\n0,1,2\n1,2,3\n",
+    ),
+    (
+        "dispersion",
+        "k (1/Å),Binding energy (eV),error\n0,1,0.1\n0.1,2,0.1\n",
+    ),
+    (
+        "gaps",
+        "material,PBE (eV),G0W0 (eV),optical gap (eV)\nXa,0.5,1.5,\nXb,2.5,3.5,3\n",
+    ),
+    (
+        "series",
+        "bands,cutoff (Ry),gap (eV)\n100,20,1.5\n200,20,1.6\n",
+    ),
+];
+
+#[test]
+fn documents_and_looks_of_every_kind_are_valid_and_come_back() {
+    for (kind, text) in TABLES {
+        let source = Source::from_text("t", text);
+        let read =
+            read_any(source, None, &Hints::default()).unwrap_or_else(|why| panic!("{why:?}"));
+        assert_eq!(read[0].kind().name(), kind);
+        let json = read[0].to_json().unwrap();
+        let value: Value = serde_json::from_str(&json).unwrap();
+        match kind {
+            "levels" => assert_valid::<Levels>(&value),
+            "density" => assert_valid::<Density>(&value),
+            "dispersion" => assert_valid::<Dispersion>(&value),
+            "gaps" => assert_valid::<Gaps>(&value),
+            _ => assert_valid::<Series>(&value),
+        }
+        let back = read_any(Source::from_text("t", &json), None, &Hints::default()).unwrap();
+        assert_eq!(back[0].to_json().unwrap(), json);
+        let look = Look {
+            schema: Look::identifier(),
+            files: vec![read[0].look(), back[0].look()],
+        };
+        let look = serde_json::to_value(look).unwrap();
+        assert_valid::<Look>(&look);
+    }
+}
+
+#[test]
+fn a_document_whose_arrays_differ_in_length_is_refused() {
+    let mut document = serde_json::to_value(spectrum("pes.csv")).unwrap();
+    document["intensity"].as_array_mut().unwrap().pop();
+    let source = Source::from_text("short.json", &document.to_string());
+    let problems = read_any(source, None, &Hints::default()).unwrap_err();
+    assert!(
+        problems[0].message.contains("`intensity` has 342 entries"),
+        "{problems:?}"
+    );
 }
 
 #[test]

@@ -380,7 +380,10 @@ fn location(levels: &Validated<Levels>, row: usize, energy_ev: f64, role: Role) 
         k,
         band: document.band.as_ref().map(|bands| bands[row]),
         spin: document.spin.as_ref().map(|spins| spins[row]),
-        line: levels.place_of(row, role).map_or(0, |place| place.line),
+        line: levels
+            .place_of(row, role)
+            .or_else(|| levels.place_of(row, Role::EnergyMeanField))
+            .map(|place| place.line),
     }
 }
 

@@ -251,7 +251,7 @@ fn location(energy_ev: f64, band: i64) -> EdgeLocation {
         k: "1".to_owned(),
         band: Some(band),
         spin: None,
-        line: 17,
+        line: Some(17),
     }
 }
 

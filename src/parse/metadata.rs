@@ -62,9 +62,17 @@ pub(super) fn read(
             parts.extend(loose(text, kind));
         }
         if parts.is_empty() {
-            for sentence in text.split([',', ';']).take(MOST_PIECES) {
-                let place = source.place(dialect::span_in(text, sentence.trim(), comment.start));
-                if let Err(problem) = metadata.sentence(sentence.trim(), &place, kind) {
+            let mut energies = false;
+            for piece in text.split([',', ';']).map(str::trim).take(MOST_PIECES) {
+                let place = source.place(dialect::span_in(text, piece, comment.start));
+                let own = subject(piece).map(|subject| subject.about == UnitOf::Energy);
+                // `energies in Ha, relative to E_F`: the second piece goes on about the first.
+                let sentence = match own {
+                    None if energies => format!("energies {piece}"),
+                    _ => piece.to_owned(),
+                };
+                energies = own.unwrap_or(energies);
+                if let Err(problem) = metadata.sentence(&sentence, &place, kind) {
                     problems.push(problem);
                 }
             }
@@ -411,6 +419,16 @@ mod tests {
                 Some(Reference::Fermi),
             ),
             ("energies relative to vacuum", None, Some(Reference::Vacuum)),
+            (
+                "energies in Ry, relative to the Fermi level",
+                Some(EnergyUnit::Rydberg),
+                Some(Reference::Fermi),
+            ),
+            (
+                "quasiparticle energies, in eV",
+                Some(EnergyUnit::Electronvolt),
+                None,
+            ),
             ("units: eV", Some(EnergyUnit::Electronvolt), None),
             ("energy unit = Ry", Some(EnergyUnit::Rydberg), None),
             ("reference: E_VBM", None, Some(Reference::ValenceEdge)),

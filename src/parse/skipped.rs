@@ -15,6 +15,8 @@ pub struct Skipped {
     pub reason: String,
 }
 
+/// Characters of a skipped line that are shown.
+const QUOTED: usize = 60;
 /// Lines that are listed.
 const LISTED: usize = 20;
 
@@ -53,11 +55,17 @@ pub(super) fn skipped(source: &Source, table: &Table) -> (Vec<Skipped>, usize) {
     let (near, far) = lines.split_at(lines.len().min(10 * LISTED));
     let mut skipped: Vec<Skipped> = near
         .iter()
-        .map(|&(at, reason)| (source.place(at..at).line, reason))
-        .filter(|(line, _)| !understood.contains(line))
-        .map(|(line, reason)| Skipped {
+        .map(|&(at, reason)| {
+            let place = source.place(at..at);
+            let text = place.excerpt.trim();
+            let cut = text.chars().nth(QUOTED).map_or("", |_| "…");
+            let quoted: String = text.chars().take(QUOTED).collect();
+            (place.line, reason, quoted + cut)
+        })
+        .filter(|(line, ..)| !understood.contains(line))
+        .map(|(line, reason, text)| Skipped {
             line,
-            reason: reason.to_owned(),
+            reason: format!("{reason}: `{text}`"),
         })
         .collect();
     let all = skipped.len() + far.len();

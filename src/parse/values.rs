@@ -106,6 +106,18 @@ pub(super) fn values(
     wanted: &[(usize, Content)],
     problems: &mut Problems,
 ) -> Read {
+    read_all(source, layout, names, wanted, problems, true)
+}
+
+/// Reads every row, plain lines as bytes where `plainly` says so.
+fn read_all(
+    source: &Source,
+    layout: &Layout,
+    names: &[Name],
+    wanted: &[(usize, Content)],
+    problems: &mut Problems,
+    plainly: bool,
+) -> Read {
     let mut columns: Vec<Values> = wanted
         .iter()
         .map(|&(_, content)| Values::of(content, layout.rows))
@@ -120,6 +132,7 @@ pub(super) fn values(
         names,
         wanted,
         plan,
+        plainly,
     };
     let tasks = tasks(layout, wanted, &mut columns);
     let done: Vec<Done> = tasks
@@ -209,12 +222,15 @@ struct Reader<'a> {
     wanted: &'a [(usize, Content)],
     /// For each field, which of the wanted columns it is.
     plan: Vec<Option<usize>>,
+    /// Whether plain lines are read as bytes.
+    plainly: bool,
 }
 
 impl Reader<'_> {
     fn read(&self, anchor: usize, rows: usize, mut slots: Vec<Slot<'_>>) -> Done {
         let mut done = Done::default();
         let plain = PlainLines::new(self.source.text(), &self.layout.dialect, &self.plan);
+        let plain = plain.filter(|_| self.plainly);
         let text = self.source.text().as_bytes();
         let (mut at, mut row) = (self.layout.anchor_start(anchor), 0);
         while row < rows {
@@ -377,5 +393,74 @@ fn advice(text: &str) -> &'static str {
     } else {
         "write the number there; a row that has none may be removed on purpose, and `#` before a \
          line makes it a comment"
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use proptest::prelude::*;
+
+    use super::*;
+    use crate::parse::header_line;
+    use crate::parse::role::Hints;
+
+    /// What one way reads: the columns to the bit, the problems, the text left out.
+    fn read(text: &str, content: &[Content], plainly: bool) -> Option<(Vec<String>, Vec<String>)> {
+        let source = Source::from_text("t", text);
+        let layout = Layout::of(&source, &Hints::default()).ok()?;
+        let names = header_line::nameless(&layout);
+        let wanted: Vec<_> = (0..layout.fields())
+            .filter(|field| field % 4 != 3)
+            .map(|field| (field, content[field % content.len()]))
+            .collect();
+        let mut problems = Problems::default();
+        let read = read_all(&source, &layout, &names, &wanted, &mut problems, plainly);
+        let shown = |values: &Values| match values {
+            Values::Numbers(numbers) => {
+                let bits = |x: &f64| if x.is_nan() { 1 } else { x.to_bits() };
+                format!("{:?}", numbers.iter().map(bits).collect::<Vec<_>>())
+            }
+            other => format!("{other:?}"),
+        };
+        let problems = problems.into_list();
+        let columns = match problems.is_empty() {
+            true => read.columns.iter().map(shown).collect(),
+            // A refused row leaves its cells open.
+            false => Vec::new(),
+        };
+        let mut said: Vec<String> = problems.iter().map(ToString::to_string).collect();
+        said.push(format!("{:?} {}", read.left_out, read.left_out_rows));
+        Some((columns, said))
+    }
+
+    fn cell() -> impl Strategy<Value = String> {
+        prop_oneof![
+            4 => "-?[0-9]{1,4}(\\.[0-9]{0,9})?",
+            2 => "[+-]?[0-9]{1,3}\\.[0-9]{1,3}[eEdD][+-]?[0-9]{1,3}",
+            2 => "[0-9]{1,6}",
+            1 => prop::sample::select(vec![
+                "", "nan", "NaN", "inf", "--", "****", "1e400", "-0.0", "−1.5", "1.0-101", "x", "up",
+                "\"1\"", "\"a\"\"b\"", "# 1", "!", "1.2500-3.2500", "12.345612.3456", "é", "123456789012345678",
+                "9007199254740993", "1,5", ".", "-", "+7", "0x1", "1_0", "Xa",
+            ]).prop_map(str::to_owned),
+        ]
+    }
+
+    proptest! {
+        #![proptest_config(ProptestConfig::with_cases(2_000))]
+        #[test]
+        fn both_ways_read_the_same(
+            rows in prop::collection::vec(prop::collection::vec(cell(), 1..6), 1..12),
+            delimiter in prop::sample::select(vec![",", ", ", ";", "\t", "  ", " ", " \t", "|"]),
+            end in prop::sample::select(vec!["\n", "\r\n", "\r"]),
+            between in prop::sample::select(vec!["", "\n", "# c\n", " trailing", ",", "  \t"]),
+            kinds in prop::collection::vec(0usize..5, 1..5),
+        ) {
+            let contents = [Content::Number, Content::Number, Content::Integer, Content::Text, Content::Unused];
+            let content: Vec<_> = kinds.into_iter().map(|kind| contents[kind]).collect();
+            let lines: Vec<String> = rows.iter().map(|row| row.join(delimiter)).collect();
+            let text = lines.join(&format!("{between}{end}"));
+            prop_assert_eq!(read(&text, &content, true), read(&text, &content, false), "{:?}", text);
+        }
     }
 }

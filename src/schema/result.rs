@@ -32,8 +32,8 @@ pub struct EdgeLocation {
     pub band: Option<i64>,
     /// The spin channel, as the table counts.
     pub spin: Option<i64>,
-    /// The 1-based line of the table.
-    pub line: usize,
+    /// The 1-based line of the table, where it was read from one.
+    pub line: Option<usize>,
 }
 
 /// The computed side of the comparison.

@@ -3,6 +3,8 @@
 #![allow(clippy::cast_precision_loss, clippy::format_collect)]
 
 mod answers;
+mod convert;
+mod look;
 mod refusals;
 
 use std::collections::BTreeMap;
@@ -51,6 +53,22 @@ fn compare(folder: &TempDir, arguments: &[&str]) -> Output {
         .args(arguments)
         .output()
         .unwrap()
+}
+
+/// Runs the program in a folder.
+fn run(folder: &TempDir, arguments: &[&str]) -> Output {
+    Command::new(env!("CARGO_BIN_EXE_bandrule"))
+        .current_dir(folder.path())
+        .args(arguments)
+        .output()
+        .unwrap()
+}
+
+/// A folder with one file.
+fn with_file(name: &str, bytes: &[u8]) -> TempDir {
+    let folder = tempfile::tempdir().unwrap();
+    fs::write(folder.path().join(name), bytes).unwrap();
+    folder
 }
 
 fn text(bytes: &[u8]) -> String {

@@ -59,7 +59,7 @@ fn edges(result: &ResultDocument) -> Markup {
             cell(edge.k.as_str()),
             index(edge.band),
             index(edge.spin),
-            cell(edge.line.to_string()),
+            cell(edge.line.map_or_else(String::new, |line| line.to_string())),
         ]
     };
     let rows = [
