@@ -71,35 +71,31 @@ pub(super) fn rendered(problems: &[Problem]) -> String {
     list.join("\n\n")
 }
 
-fn one_of<T>(text: &str, found: Option<T>, names: Vec<&str>) -> Result<T, String> {
+fn one_of<T>(text: &str, found: Option<T>, names: &[&str]) -> Result<T, String> {
     found.ok_or_else(|| format!("`{text}` is none of {}", names.join(", ")))
 }
 
 fn kind(text: &str) -> Result<Kind, String> {
-    one_of(
-        text,
-        Kind::from_name(text),
-        Kind::ALL.map(Kind::name).to_vec(),
-    )
+    one_of(text, Kind::from_name(text), &Kind::ALL.map(Kind::name))
 }
 
 fn reference(text: &str) -> Result<Reference, String> {
-    let names = Reference::ALL.map(Reference::name).to_vec();
-    one_of(text, Reference::from_name(text), names)
+    let names = Reference::ALL.map(Reference::name);
+    one_of(text, Reference::from_name(text), &names)
 }
 
 fn axis(text: &str) -> Result<AxisKind, String> {
-    let names = AxisKind::ALL.map(AxisKind::name).to_vec();
-    one_of(text, AxisKind::from_name(text), names)
+    let names = AxisKind::ALL.map(AxisKind::name);
+    one_of(text, AxisKind::from_name(text), &names)
 }
 
 fn decimal(text: &str) -> Result<Decimal, String> {
-    one_of(text, Decimal::from_name(text), vec!["point", "comma"])
+    one_of(text, Decimal::from_name(text), &["point", "comma"])
 }
 
 fn delimiter(text: &str) -> Result<Delimiter, String> {
-    let names = Delimiter::ALL.map(Delimiter::name).to_vec();
-    one_of(text, Delimiter::from_name(text), names)
+    let names = Delimiter::ALL.map(Delimiter::name);
+    one_of(text, Delimiter::from_name(text), &names)
 }
 
 fn column(text: &str) -> Result<(Role, ColumnChoice), String> {
@@ -121,6 +117,6 @@ fn by_role(text: &str) -> Result<(Role, &str), String> {
         .split_once('=')
         .filter(|(_, value)| !value.is_empty())
         .ok_or_else(|| "expected ROLE=VALUE".to_owned())?;
-    let names = Role::ALL.iter().map(|role| role.name()).collect();
-    Ok((one_of(role, Role::from_name(role), names)?, value))
+    let names: Vec<&str> = Role::ALL.iter().map(|role| role.name()).collect();
+    Ok((one_of(role, Role::from_name(role), &names)?, value))
 }

@@ -122,8 +122,8 @@ const MOST_TOGETHER: usize = 100;
 pub(super) fn grown_together(text: &str) -> Option<Vec<Range<usize>>> {
     let bytes = text.as_bytes();
     let of_numbers = |&b: &u8| b.is_ascii_digit() || matches!(b, b'.' | b'-' | b'+');
-    let points = bytes.iter().filter(|&&b| b == b'.').count();
-    if points < 2 || points > MOST_TOGETHER || !bytes.iter().all(of_numbers) {
+    let points = text.matches('.').count();
+    if !(2..=MOST_TOGETHER).contains(&points) || !bytes.iter().all(of_numbers) {
         return None;
     }
     let decimals = text.len() - text.rfind('.')? - 1;
@@ -257,15 +257,13 @@ pub(super) fn rough(line: &str, delimiter: Delimiter) -> Vec<&str> {
             })
             .collect();
     };
-    match spans(line, 0, delimiter) {
-        Ok(spans) => spans.into_iter().map(|span| &line[span]).collect(),
-        Err(_) => {
-            let cells = line.split(char::from(byte));
-            cells
-                .map(|cell| cell.trim_matches([' ', '\t', '"']))
-                .collect()
-        }
+    if let Ok(spans) = spans(line, 0, delimiter) {
+        return spans.into_iter().map(|span| &line[span]).collect();
     }
+    let cells = line.split(char::from(byte));
+    cells
+        .map(|cell| cell.trim_matches([' ', '\t', '"']))
+        .collect()
 }
 
 /// The bytes of the cells' contents in a line that starts at byte `base`, without the quotes and

@@ -20,7 +20,7 @@ impl Lower for Gaps {
             .map(|&field| Meaning::of(lowering, field, fields.len()))
             .collect();
         let excitation = lowering.texts_of(Role::Excitation);
-        let excitation = excitations(lowering, excitation, &columns);
+        let excitation = excitations(lowering, excitation.as_ref(), &columns);
         let transition = lowering.texts_of(Role::Transition);
         let times = fields.len();
         let values = values?;
@@ -52,7 +52,7 @@ impl Lower for Gaps {
                 .collect(),
             uncertainty_ev: uncertainty,
             excitation: excitation?,
-            momentum: momenta(transition, &columns, rows),
+            momentum: momenta(transition.as_ref(), &columns, rows),
             method,
             starting_point,
             temperature_k: temperature.map(|column| {
@@ -102,6 +102,8 @@ impl Meaning {
     }
 }
 
+// No column, or one that cannot be read: the two are told apart.
+#[allow(clippy::option_option)]
 fn uncertainty(lowering: &mut Lowering<'_>, values: &[usize]) -> Option<Option<Vec<f64>>> {
     let Some(field) = lowering.field(Role::StandardUncertainty) else {
         return Some(None);
@@ -134,16 +136,13 @@ fn repeated(texts: &Texts, times: usize) -> Texts {
 /// What each value excites: by its row where there is a column of it, by its header otherwise.
 fn excitations(
     lowering: &mut Lowering<'_>,
-    texts: Option<Texts>,
+    texts: Option<&Texts>,
     columns: &[Meaning],
 ) -> Option<Vec<Excitation>> {
     let rows = lowering.rows();
     let mut all = Vec::with_capacity(rows * columns.len());
     for row in 0..rows {
-        let text = texts
-            .as_ref()
-            .and_then(|texts| texts.get(row))
-            .unwrap_or_default();
+        let text = texts.and_then(|texts| texts.get(row)).unwrap_or_default();
         let by_row = match text {
             "" => Some(Excitation::Unknown),
             text => excitation(text),
@@ -189,11 +188,10 @@ fn excitation(text: &str) -> Option<Excitation> {
         .or((text == "unknown").then_some(Excitation::Unknown))
 }
 
-fn momenta(transition: Option<Texts>, columns: &[Meaning], rows: usize) -> Texts {
+fn momenta(transition: Option<&Texts>, columns: &[Meaning], rows: usize) -> Texts {
     let mut all = Texts::default();
     for row in 0..rows {
         let by_row = transition
-            .as_ref()
             .and_then(|texts| texts.get(row))
             .unwrap_or_default();
         for column in columns {

@@ -232,9 +232,9 @@ fn blocks(lowering: &mut Lowering<'_>, document: &mut Levels) {
         ));
         *slot = Some(numbers);
     }
-    notes
-        .into_iter()
-        .for_each(|note| lowering.step("number", note));
+    for note in notes {
+        lowering.step("number", note);
+    }
 }
 
 /// The parts of the self-energy and the shares of orbitals.

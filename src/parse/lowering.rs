@@ -346,6 +346,8 @@ impl Lowering<'_> {
     }
 
     /// What the energies of a field are counted along, where anything says it.
+    // Nothing said, or said in two ways, which is a problem: the two are told apart.
+    #[allow(clippy::option_option)]
     pub fn axis_if_said(&mut self, field: usize) -> Option<Option<AxisKind>> {
         let (says, place) = (
             self.table.says(field),

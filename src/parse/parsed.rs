@@ -65,7 +65,8 @@ pub(super) struct Melt {
     pub fields: Vec<usize>,
 }
 
-/// Where the values of a document stand.
+/// Where the values of a document stand. There is one a file.
+#[allow(clippy::large_enum_variant)]
 #[derive(Debug, Clone, PartialEq)]
 enum Positions {
     Table {

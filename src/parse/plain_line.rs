@@ -18,8 +18,8 @@ pub(super) struct PlainLines<'p> {
 impl<'p> PlainLines<'p> {
     /// For a dialect whose lines may be plain.
     pub fn new(text: &'p str, dialect: &Dialect, plan: &'p [Option<usize>]) -> Option<Self> {
-        let plain = dialect.decimal == Decimal::Point && dialect.delimiter != Delimiter::Pipe;
-        plain.then(|| Self {
+        let may_be = dialect.decimal == Decimal::Point && dialect.delimiter != Delimiter::Pipe;
+        may_be.then(|| Self {
             text,
             plan,
             delimiter: dialect.delimiter.byte(),
@@ -91,8 +91,8 @@ impl<'p> PlainLines<'p> {
                 }
                 Some(slot) => after_spaces(number(rest, row, slot)?),
             };
-            let delimited = rest.first() == Some(&delimiter);
-            match (field == last, delimited) {
+            let more = rest.first() == Some(&delimiter);
+            match (field == last, more) {
                 (_, true) => rest = &rest[1..],
                 (false, false) => return None,
                 (true, false) => {}

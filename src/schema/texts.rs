@@ -60,6 +60,7 @@ impl Texts {
     }
 
     /// The texts in order.
+    #[must_use]
     pub fn iter(&self) -> impl ExactSizeIterator<Item = &str> {
         (0..self.len()).map(|row| self.get(row).unwrap_or_default())
     }

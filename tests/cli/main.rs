@@ -1,6 +1,11 @@
 //! The program from outside: exit status, standard output, standard error and files.
 
-#![allow(clippy::cast_precision_loss, clippy::format_collect)]
+#![allow(
+    clippy::cast_precision_loss,
+    clippy::float_cmp,
+    clippy::format_collect,
+    clippy::format_push_string
+)]
 
 mod answers;
 mod convert;

@@ -336,7 +336,7 @@ fn text(
     let in_comment = dialect.units == Units::Comment;
     match (table.sentence, in_comment) {
         (Some(sentence), true) => {
-            text += &dialect.comment(&format!("{sentence} in {}", dialect.unit.0))
+            text += &dialect.comment(&format!("{sentence} in {}", dialect.unit.0));
         }
         (Some(sentence), false) => text += &dialect.comment(sentence),
         (None, true) => text += &dialect.comment(&format!("energies in {}", dialect.unit.0)),

@@ -1,6 +1,14 @@
 //! One table in many dialects: what a generator writes is read to the same numbers, or refused where
 //! it is truly ambiguous. Every number of a run follows from its seed.
 
+#![allow(
+    clippy::cast_possible_wrap,
+    clippy::cast_precision_loss,
+    clippy::format_push_string,
+    clippy::single_match_else,
+    clippy::struct_excessive_bools
+)]
+
 mod dress;
 mod tables;
 

@@ -180,6 +180,15 @@ fn levels(table: &mut Table, random: &mut Random) {
             numbers(random, rows, 0.0, 1.0),
         ));
     }
+    values_of_levels(&mut columns, random, rows);
+    if table.blocks.is_none() {
+        columns.shuffle(random);
+    }
+    table.columns = columns;
+}
+
+/// Energies, and what may stand beside them.
+fn values_of_levels(columns: &mut Vec<Column>, random: &mut Random, rows: usize) {
     let mut energies = vec![
         (
             "energy_mean_field_ev",
@@ -242,10 +251,6 @@ fn levels(table: &mut Table, random: &mut Random) {
             ));
         }
     }
-    if table.blocks.is_none() {
-        columns.shuffle(random);
-    }
-    table.columns = columns;
 }
 
 fn path(table: &mut Table, random: &mut Random) {
