@@ -138,7 +138,7 @@ pub(super) fn conclude(
             continue;
         }
         let new = explained(source, rows, delimiter);
-        let rank = |one: &Explained| (one.numbers, one.share, one.fields);
+        let rank = |one: &Explained| (one.numbers, one.fields, one.share);
         let better = best.as_ref().is_none_or(|best| rank(&new) > rank(best));
         if better {
             best = Some(new);
@@ -170,8 +170,8 @@ pub(super) fn conclude(
 /// How well a delimiter explains the rows.
 struct Explained {
     delimiter: Delimiter,
-    /// Numbers in a row, less half of those that stand in a text, times the share of the rows that
-    /// have the most common number of fields.
+    /// Numbers in a row, less half of the doubtful texts, times the share of the rows that have the
+    /// most common number of fields.
     numbers: f64,
     /// The share of the cells that are numbers.
     share: f64,
@@ -193,7 +193,7 @@ impl Default for Explained {
 
 /// How well a delimiter explains the rows; a number may have a decimal comma too.
 fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> Explained {
-    let (mut all, mut numbers, mut cut) = (0u32, 0u32, 0u32);
+    let (mut all, mut numbers, mut doubtful) = (0u32, 0u32, 0u32);
     let mut counts = BTreeMap::<usize, [u32; 2]>::new();
     for row in rows {
         let line = source.slice(row.clone());
@@ -205,7 +205,7 @@ fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> Ex
             all += 1;
             let is_number = number(text).is_some() || has_decimal_comma(text);
             numbers += u32::from(is_number);
-            cut += u32::from(!is_number && ends_with_number(text));
+            doubtful += u32::from(!is_number && is_doubtful(text));
         }
     }
     let most = counts.into_iter().max_by_key(|&(_, [count, _])| count);
@@ -214,18 +214,21 @@ fn explained(source: &Source, rows: &[Range<usize>], delimiter: Delimiter) -> Ex
     let trailing = delimiter != Delimiter::Blanks && fields > 1 && open == count;
     Explained {
         delimiter,
-        numbers: (f64::from(numbers) - f64::from(cut) / 2.0) / lines * f64::from(count) / lines,
+        numbers: (f64::from(numbers) - f64::from(doubtful) / 2.0) / lines * f64::from(count)
+            / lines,
         share: f64::from(numbers) / f64::from(all.max(1)),
         fields: fields - usize::from(trailing),
         trailing,
     }
 }
 
-/// Whether a text has signs that may separate cells, and a number after the last of them, as where a
-/// decimal comma was taken for a delimiter.
-fn ends_with_number(text: &str) -> bool {
-    text.rsplit_once([' ', '\t', ';', '|'])
-        .is_some_and(|(_, last)| number(last).is_some())
+/// Whether a text may have been cut in the wrong places: it has a sign that separates cells, or a
+/// number after its last blank, as where a decimal comma was taken for a delimiter.
+fn is_doubtful(text: &str) -> bool {
+    let number_last = text
+        .rsplit_once([' ', '\t', ';', '|'])
+        .is_some_and(|(_, last)| number(last).is_some());
+    number_last || text.contains([',', ';', '\t', '|'])
 }
 
 /// The decimal mark that the numbers of the rows have.
@@ -349,6 +352,9 @@ mod tests {
             ("up;1;-2.5", Semicolon, 3, Decimal::Point),
             ("G, 1, 2.5", Comma, 3, Decimal::Point),
             ("\"a;b\",1,2", Comma, 3, Decimal::Point),
+            ("Xa,cubic,QSGW,,0.047,Ha,,run 2", Comma, 8, Decimal::Point),
+            ("Xa cubic 3,1", Blanks, 3, Decimal::Comma),
+            ("Xa;note, in part;3.1", Semicolon, 3, Decimal::Point),
             ("| 1 | 2.5 |", Pipe, 2, Decimal::Point),
             ("1|2", Pipe, 2, Decimal::Point),
             ("1,2,", Comma, 2, Decimal::Point),

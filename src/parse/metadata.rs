@@ -1,9 +1,11 @@
 //! What comment lines say: `key: value` and `key = value`, and sentences such as `energies in Ha`.
 
+use std::borrow::Cow;
 use std::ops::Range;
 
 use super::condition::{self, ConditionKey, Value};
 use super::evidence::Evidence;
+use super::number::Decimal;
 use super::problem::Problems;
 use super::role::{Kind, Role};
 use super::words::{self, Relation};
@@ -39,6 +41,8 @@ pub(super) struct Metadata {
     pub references: Vec<Evidence<Reference>>,
     /// Whether the energies are said to be mean-field or quasiparticle ones.
     pub energy_kind: Option<Evidence<Role>>,
+    /// The decimal mark of the file's numbers.
+    decimal: Decimal,
 }
 
 /// Characters of a comment that evidence quotes.
@@ -52,14 +56,18 @@ pub(super) fn read(
     source: &Source,
     comments: impl Iterator<Item = Range<usize>>,
     kind: Kind,
+    decimal: Decimal,
     problems: &mut Problems,
 ) -> Metadata {
-    let mut metadata = Metadata::default();
+    let mut metadata = Metadata {
+        decimal,
+        ..Metadata::default()
+    };
     for comment in comments {
         let text = source.slice(comment.clone());
         let mut parts = statements(text);
         if parts.is_empty() {
-            parts.extend(loose(text, kind));
+            parts.extend(loose(text, kind, decimal));
         }
         if parts.is_empty() {
             let mut energies = false;
@@ -102,12 +110,12 @@ pub(super) fn is_statement(text: &str) -> bool {
 pub(super) fn is_known(text: &str) -> bool {
     [Kind::Levels, Kind::Spectrum]
         .iter()
-        .any(|&kind| loose(text, kind).is_some())
+        .any(|&kind| loose(text, kind, Decimal::Comma).is_some())
 }
 
 /// A known key and its value without a sign between them, or with one that separates cells, as in
 /// `photon energy 21.218 eV` or `Dwell time (s),0.5`.
-fn loose(text: &str, kind: Kind) -> Option<(Range<usize>, Range<usize>)> {
+fn loose(text: &str, kind: Kind, decimal: Decimal) -> Option<(Range<usize>, Range<usize>)> {
     let cell = text.find(['\t', ',', ';', '|']);
     let digit = text.find(|c: char| c.is_ascii_digit() || matches!(c, '-' | '−'));
     let cuts = [cell.map(|at| (at, at + 1)), digit.map(|at| (at, at))];
@@ -118,10 +126,27 @@ fn loose(text: &str, kind: Kind) -> Option<(Range<usize>, Range<usize>)> {
         }
         let (known, unit) = condition::recognise(key, kind)?;
         // A short word may be the name of a column: its value must be one.
-        condition::read(known, value, unit.as_deref()).ok()?;
+        condition::read(known, &with_point(value, decimal), unit.as_deref()).ok()?;
         let at = |part: &str| dialect::span_in(text, part, 0);
         Some((at(key), at(value)))
     })
+}
+
+/// A value with a decimal point, where the file's numbers have commas.
+fn with_point(value: &str, decimal: Decimal) -> Cow<'_, str> {
+    let is_digit = |at: Option<usize>| {
+        let byte = at.and_then(|at| value.as_bytes().get(at));
+        byte.is_some_and(u8::is_ascii_digit)
+    };
+    let comma = value
+        .match_indices(',')
+        .find(|(at, _)| is_digit(at.checked_sub(1)) && is_digit(Some(at + 1)));
+    match (comma, decimal) {
+        (Some((at, _)), Decimal::Comma) => {
+            Cow::Owned(format!("{}.{}", &value[..at], &value[at + 1..]))
+        }
+        _ => Cow::Borrowed(value),
+    }
 }
 
 const SEPARATORS: [char; 6] = [' ', '\t', ',', ';', '|', '"'];
@@ -182,7 +207,8 @@ impl Metadata {
             // A reference to the literature, which names no zero.
             return Ok(());
         }
-        let value = condition::read(key, &statement.value, unit.as_deref()).map_err(|why| {
+        let text = with_point(&statement.value, self.decimal);
+        let value = condition::read(key, &text, unit.as_deref()).map_err(|why| {
             Problem::new(format!("`{}`: {why}", statement.key))
                 .at(statement.place.clone())
                 .with_help("correct the line; one that does not begin with this key is not read")
@@ -394,7 +420,13 @@ mod tests {
         let source = Source::from_text("t", text);
         let lines: Vec<_> = source.lines_from(0).map(|l| l.start..l.end).collect();
         let mut problems = Problems::default();
-        let metadata = read(&source, lines.into_iter(), kind, &mut problems);
+        let metadata = read(
+            &source,
+            lines.into_iter(),
+            kind,
+            Decimal::Point,
+            &mut problems,
+        );
         (metadata, problems.into_list())
     }
 
@@ -454,6 +486,22 @@ mod tests {
             metadata.intensity_units[0].value,
             IntensityUnit::CountsPerSecond
         );
+    }
+
+    #[test]
+    fn values_have_the_decimal_mark_of_the_file() {
+        let source = Source::from_text("t", "Photon energy;21,22 eV");
+        let mut problems = Problems::default();
+        let lines = [0..source.text().len()].into_iter();
+        let metadata = read(
+            &source,
+            lines,
+            Kind::Spectrum,
+            Decimal::Comma,
+            &mut problems,
+        );
+        assert_eq!(metadata.known[0].1, Value::Number(21.22));
+        assert_eq!(metadata.statements[0].value, "21,22 eV");
     }
 
     #[test]

@@ -1,9 +1,10 @@
 //! The text of one number, and of a value that is not there.
 
 /// The sign between the whole part and the fraction.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub enum Decimal {
     /// `1.5`
+    #[default]
     Point,
     /// `1,5`
     Comma,

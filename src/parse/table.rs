@@ -50,7 +50,8 @@ impl Table {
             .cloned()
             .collect();
         comments.sort_by_key(|line| line.start);
-        let metadata = metadata::read(source, comments.into_iter(), kind, problems);
+        let decimal = layout.dialect.decimal;
+        let metadata = metadata::read(source, comments.into_iter(), kind, decimal, problems);
         if let Some(problem) = second_header(source, &layout, &names, kind) {
             problems.push(problem);
         }
