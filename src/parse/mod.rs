@@ -53,6 +53,8 @@ mod values;
 mod words;
 
 #[cfg(test)]
+mod header_tests;
+#[cfg(test)]
 mod nasty_tests;
 #[cfg(test)]
 mod tests;
