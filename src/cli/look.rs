@@ -13,7 +13,8 @@ use crate::schema::{Document, Look, LookColumn, LookFile};
 #[derive(Debug, Args)]
 #[command(after_help = "\
 Shows for each file the kind, every column with its role, its unit and the evidence, the dialect,
-the conditions, what was skipped, and the options that would change a conclusion.
+the conditions, what was skipped, and the options that would change a conclusion. A ROLE that is not
+known is answered with the list of all.
 
 Exit status: 0 done; 2 a file could not be read or is not certain, nothing printed.")]
 pub(super) struct Arguments {
