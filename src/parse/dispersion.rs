@@ -54,7 +54,8 @@ pub(super) fn uncertainties(
     if own.is_some() || by_row {
         return lowering.energies(role, field, None);
     }
-    let of_energy = lowering.unit_finder().energy_if_said(Role::Energy, energy);
+    let of = lowering.table.role_of(energy).unwrap_or(Role::Energy);
+    let of_energy = lowering.unit_finder().energy_if_said(of, energy);
     // Energies without a unit are refused where they are read.
     let mut unit = lowering.problems.keep(of_energy)??;
     unit.says = format!("the energies, by {}", unit.says);

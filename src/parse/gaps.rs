@@ -41,6 +41,10 @@ impl Lower for Gaps {
         let source = text(Role::Origin);
         let by_rows = text(Role::Method);
         let method = method(by_rows, &columns, rows);
+        if let Some(field) = lowering.field(Role::Temperature) {
+            let kelvin = lowering.unit_finder().kelvin(field);
+            lowering.problems.keep(kelvin)?;
+        }
         let temperature = lowering.numbers_of(Role::Temperature);
         Some(Self {
             schema: Self::identifier(),

@@ -73,6 +73,7 @@ pub(super) fn read(cell: &str, kind: Kind) -> Reading {
 /// The cell with typographic signs in their plain form.
 fn plain(cell: &str) -> String {
     let plain = cell
+        .replace("⁻¹", "-1")
         .chars()
         // Marks that cannot be seen are no part of a name.
         .filter(|c| {

@@ -242,3 +242,38 @@ fn long_lines_are_no_trap() {
     assert!(problems(&text, false)[0].to_string().len() < 300);
     assert!(started.elapsed() < Duration::from_secs(20));
 }
+
+/// What a file of any kind is read as, or its first problem.
+fn any(text: &str, hints: &Hints) -> Result<serde_json::Value, String> {
+    match read_any(Source::from_text("t", text), None, hints) {
+        Ok(read) => Ok(serde_json::from_str(&read[0].to_json().unwrap()).unwrap()),
+        Err(problems) => Err(problems.first().expect("a reason").to_string()),
+    }
+}
+
+#[test]
+fn reciprocal_units_are_read_with_raised_signs() {
+    let read = any("k (Å⁻¹),E_B (eV)\n0.1,1\n", &Hints::default()).unwrap();
+    assert_eq!(read["k_unit"], "1/Å");
+    let read = any("KE (eV),I (counts s⁻¹)\n1,2\n", &Hints::default()).unwrap();
+    assert_eq!(read["intensity_kind"], "counts-per-second");
+}
+
+#[test]
+fn temperatures_are_in_kelvin_or_refused() {
+    for unit in ["°C", "°F", "mK"] {
+        let text = format!("material,gap (eV),T ({unit})\nalpha,1,20\n");
+        let why = any(&text, &Hints::default()).unwrap_err();
+        assert!(why.contains("temperatures are in K"), "{why}");
+    }
+    let read = any("T / K,material,gap (eV)\n20,alpha,1\n", &Hints::default()).unwrap();
+    assert_eq!(read["temperature_k"][0], 20.0);
+}
+
+#[test]
+fn an_uncertainty_takes_the_unit_that_the_user_gives_its_value() {
+    let mut hints = Hints::default();
+    hints.units.insert(Role::Value, "meV".into());
+    let read = any("material,gap,gap error\nalpha,600,20\n", &hints).unwrap();
+    assert_eq!(read["uncertainty_ev"][0], 0.02);
+}

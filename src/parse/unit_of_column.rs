@@ -60,6 +60,13 @@ impl Units<'_> {
         )
     }
 
+    /// Refuses a column of temperatures that gives another unit than kelvin.
+    pub fn kelvin(&self, field: usize) -> Result<(), Problem> {
+        let read = |text: &str| (text == "K").then_some("K");
+        self.unit(Role::Temperature, field, read, &[], Vec::new())
+            .map(|_| ())
+    }
+
     /// The unit of a density of states, where anything says it.
     pub fn density(
         &self,
@@ -199,6 +206,7 @@ fn spellings(role: Role) -> String {
                 .collect();
             format!("momenta are in {}", all.join(", "))
         }
+        Role::Temperature => "temperatures are in K".to_owned(),
         Role::Density | Role::Projection => {
             "densities of states are in states/eV, states/Ha, states/Ry or arb. u.".to_owned()
         }
