@@ -195,6 +195,12 @@ fn conclude(source: &Source, layout: &Layout, hints: &Hints) -> Result<Kind, Pro
     if fitting.iter().any(|&(kind, _)| kind == Kind::Spectrum) {
         fitting.retain(|&(kind, _)| !by_letters(kind));
     }
+    // A kind that leaves columns unknown which another kind knows is doubtful.
+    let known_by_best = best.as_ref().map_or(0, |(known, ..)| *known);
+    let rival = best
+        .as_ref()
+        .is_some_and(|(_, kind, _)| *kind == Kind::Levels);
+    fitting.retain(|&(kind, known)| !(rival && kind == Kind::Dispersion && known < known_by_best));
     let most = fitting.iter().map(|&(_, known)| known).max().unwrap_or(0);
     let kinds: Vec<Kind> = fitting
         .iter()

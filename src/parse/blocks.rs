@@ -1,8 +1,8 @@
 //! Blocks of rows: what their titles count, or the blank lines between them.
 
-use super::Source;
 use super::layout::Layout;
-use super::title::{Counted, Title, title};
+use super::title::{Counted, Title, is_like_title, title};
+use super::{Problem, Source};
 
 /// What the titles of the blocks count, row by row.
 pub(super) struct Numbered {
@@ -63,6 +63,34 @@ pub(super) fn equal_blocks(layout: &Layout) -> Option<usize> {
         .enumerate()
         .all(|(block, &row)| row == (block + 1) * length);
     (even && layout.rows == (layout.breaks.len() + 1) * length).then_some(length)
+}
+
+/// Whether every block that blank lines make has the same values in a column.
+pub(super) fn repeats<T: PartialEq>(layout: &Layout, column: &[T]) -> bool {
+    equal_blocks(layout).is_some_and(|length| {
+        let mut blocks = column.chunks(length);
+        let first = blocks.next();
+        blocks.all(|block| Some(block) == first)
+    })
+}
+
+/// A comment among the rows that begins as the title of a block and says more than is understood.
+pub(super) fn odd_title(source: &Source, layout: &Layout) -> Option<Problem> {
+    let among = layout.comments.iter().filter(|aside| aside.row > 0);
+    let odd = among.map(|aside| &aside.span).find(|span| {
+        let text = source.slice((*span).clone());
+        is_like_title(text)
+    })?;
+    Some(
+        Problem::new(
+            "this comment among the rows begins as the title of a block and is not understood",
+        )
+        .at(source.place(odd.clone()))
+        .with_help(
+            "write it as `k-point 3`, `k-point 3: 0.0 0.0 0.5`, `band 4` or `spin 1`, or begin \
+                 a remark with another word",
+        ),
+    )
 }
 
 /// Whether a column has one value in each of the blocks that blank lines make.

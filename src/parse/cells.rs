@@ -5,7 +5,8 @@ use std::ops::Range;
 
 use super::Source;
 use super::dialect::{Delimiter, Dialect, span_in};
-use super::number::{is_missing, number_in};
+use super::header;
+use super::number::{has_decimal_comma, is_missing, number, number_in};
 
 pub(super) const BLANKS: [char; 2] = [' ', '\t'];
 
@@ -75,7 +76,7 @@ pub(super) fn split(
 
 /// Whether a cell begins a remark at the end of a line.
 pub(super) fn is_remark(cell: &str) -> bool {
-    cell.starts_with(['#', '!'])
+    cell.starts_with(['#', '!']) && cell != "#N/A"
 }
 
 /// The cells as they stand, empty ones after the last delimiter left away.
@@ -108,7 +109,7 @@ fn aligned(pieces: &[Range<usize>], start: usize, dialect: &Dialect) -> Option<C
     let aligned = dialect
         .extents
         .as_ref()
-        .is_none_or(|extents| pieces.iter().zip(extents).all(in_line));
+        .is_some_and(|extents| pieces.iter().zip(extents).all(in_line));
     (pieces.len() == dialect.fields && aligned).then(|| Cells {
         spans: pieces.to_vec(),
         left_out: None,
@@ -190,9 +191,7 @@ fn with_text_after(source: &Source, spans: &[Range<usize>], dialect: &Dialect) -
         .filter(|after| !after.is_empty())?;
     let is_text = |span: &Range<usize>| {
         let text = source.slice(span.clone());
-        number_in(text, dialect.decimal).is_none()
-            && !is_missing(text)
-            && text.starts_with(|c: char| c.is_alphabetic() || c == '(' || c == '[')
+        number_in(text, dialect.decimal).is_none() && !is_missing(text) && is_plain_remark(text)
     };
     let column = dialect.fields.checked_sub(1)?;
     let last = source.slice(spans.get(column)?.clone());
@@ -202,6 +201,17 @@ fn with_text_after(source: &Source, spans: &[Range<usize>], dialect: &Dialect) -
         spans: spans[..dialect.fields].to_vec(),
         left_out: Some(after[0].start..spans[spans.len() - 1].end),
     })
+}
+
+/// Whether a text without a name may be left out: words, and nothing that would change a number, such
+/// as a unit, a factor, an exponent or an uncertainty.
+pub(super) fn is_plain_remark(text: &str) -> bool {
+    let bare = text.trim_matches(['(', ')', '[', ']', ',', '.']);
+    let exponent = bare.strip_prefix(['E', 'e', 'D', 'd', 'x', '×', '*']);
+    text.starts_with(|c: char| c.is_alphabetic() || c == '(' || c == '[')
+        && !text.contains(|c: char| c.is_ascii_digit() || matches!(c, '±' | '%' | '='))
+        && !header::is_any_unit(bare)
+        && exponent.is_none_or(|rest| rest.chars().all(char::is_alphabetic) && !rest.is_empty())
 }
 
 /// The columns' extents in lines that blanks separate: `None` where two columns share a place, or
@@ -221,7 +231,12 @@ pub(super) fn extents(
         let line = source.slice(row.clone());
         let at = |text: &str| span_in(line, text, 0);
         let spans: Vec<Range<usize>> = rough(line, delimiter).into_iter().map(at).collect();
-        if spans.len() != fields {
+        let is_number = |span: &Range<usize>| {
+            let text = &line[span.clone()];
+            number(text).is_some() || has_decimal_comma(text)
+        };
+        if spans.len() != fields || !spans.iter().any(is_number) {
+            // Names among the lines say nothing of where numbers stand.
             continue;
         }
         if line.contains('\t') || !line.is_ascii() {

@@ -209,9 +209,32 @@ fn without_remark(value: &str) -> &str {
         .strip_suffix(')')
         .and_then(|head| head.rsplit_once(" ("))
     {
-        Some((head, _)) => head.trim(),
-        None => value.trim(),
+        // A remark that may change the value stays, and the value is not read.
+        Some((head, remark)) if !is_changing(remark) => head.trim(),
+        _ => value.trim(),
     }
+}
+
+fn is_changing(remark: &str) -> bool {
+    const WORDS: [&str; 14] = [
+        "sigma",
+        "hwhm",
+        "half",
+        "negative",
+        "minus",
+        "total",
+        "nominal",
+        "uncalibrated",
+        "calibrated",
+        "approx",
+        "about",
+        "not",
+        "times",
+        "x",
+    ];
+    let lower = remark.to_lowercase();
+    let mut words = lower.split(|c: char| !c.is_alphanumeric());
+    words.any(|word| WORDS.contains(&word) || word.contains(|c: char| c.is_ascii_digit()))
 }
 
 fn sweeps(text: &str) -> Result<f64, String> {

@@ -20,7 +20,9 @@ impl Lower for Density {
         for (key, value, _) in &lowering.table.metadata.known {
             set_computation(&mut computation, *key, value);
         }
-        let upwards = upwards(lowering, axis?, energies?);
+        let energies = energies?;
+        lowering.one_curve(&energies, energy)?;
+        let upwards = upwards(lowering, axis?, energies);
         let unit = unit?;
         let total = lowering.field(Role::Density);
         let total = total.map(|field| column(lowering, field, unit));

@@ -84,7 +84,6 @@ const SPECTRUM: &[Form] = &[
         &[T::Sweep, T::Number],
         &[T::Intensity, T::Counts, T::Rate],
     ),
-    (R::Sweep, &[T::Counts, T::Number], &[T::Rate]),
     (R::Intensity, &[T::Intensity], &[T::Counts, T::Rate]),
     (R::Intensity, &[T::Counts], &[T::Rate]),
     (
@@ -101,7 +100,14 @@ const DENSITY: &[Form] = &[
     (
         R::Projection,
         &[T::Orbital],
-        &[T::Element, T::Projected, T::Density, T::Total, T::Spin],
+        &[
+            T::Element,
+            T::Projected,
+            T::Density,
+            T::Total,
+            T::Spin,
+            T::Direction,
+        ],
     ),
     (
         R::Projection,

@@ -45,6 +45,7 @@ impl Lower for Gaps {
             let kelvin = lowering.unit_finder().kelvin(field);
             lowering.problems.keep(kelvin)?;
         }
+        no_blank_material(lowering, &material, times);
         let temperature = lowering.numbers_of(Role::Temperature);
         Some(Self {
             schema: Self::identifier(),
@@ -70,6 +71,28 @@ impl Lower for Gaps {
     fn provenance_mut(&mut self) -> &mut Provenance {
         &mut self.provenance
     }
+}
+
+/// A row of values without a material: a merged cell or a footer.
+fn no_blank_material(lowering: &mut Lowering<'_>, material: &Texts, times: usize) {
+    let Some(row) = material.iter().position(str::is_empty) else {
+        return;
+    };
+    let field = lowering.field(Role::Material).unwrap_or(0);
+    let span = lowering
+        .table
+        .layout
+        .cell(lowering.source, row / times.max(1), field);
+    let Some(span) = span else {
+        // The row itself is refused.
+        return;
+    };
+    let place = lowering.source.place(span);
+    lowering.problems.push(
+        Problem::new("this row has values and no material")
+            .at(place)
+            .with_help("write the material in every row; a line of averages begins with #"),
+    );
 }
 
 /// What the header of a column of values says of them.

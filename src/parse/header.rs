@@ -285,7 +285,7 @@ fn is_formula(name: &str, kind: Kind) -> bool {
         let words = words::words(part);
         words
             .iter()
-            .any(|word| words::tag(word, kind) == Some(Tag::Energy))
+            .any(|word| words::tag(word, kind).is_some_and(|tag| is_of_energy(tag, kind)))
     };
     let difference = |at: usize| {
         let (left, right) = (&name[..at], &name[at + 1..]);
@@ -295,6 +295,15 @@ fn is_formula(name: &str, kind: Kind) -> bool {
     };
     name.contains(|c: char| !c.is_alphanumeric() && !separates(c))
         || name.match_indices('-').any(|(at, _)| difference(at))
+}
+
+/// Whether a word stands for an energy, or in a table of gaps for what gives one.
+fn is_of_energy(tag: Tag, kind: Kind) -> bool {
+    let of_gaps = matches!(
+        tag,
+        Tag::MeanField | Tag::Quasiparticle | Tag::Experiment | Tag::Gap
+    );
+    tag == Tag::Energy || (kind == Kind::Gaps && of_gaps)
 }
 
 /// What the words of a name say; `None` where a word is not one of the trade's. After `@` stands

@@ -124,12 +124,9 @@ fn energy_of_bands(lowering: &mut Lowering<'_>, fields: &[usize]) -> Option<Role
         (false, true) => Some(Role::EnergyQuasiparticle),
         _ => None,
     };
-    let comments = lowering
-        .table
-        .metadata
-        .energy_kind
-        .as_ref()
-        .map(|kind| kind.value);
+    let kinds = &lowering.table.metadata.energy_kinds;
+    let first = kinds.first().map(|kind| kind.value);
+    let comments = first.filter(|first| kinds.iter().all(|kind| kind.value == *first));
     let role = lowering.table.bands.or(by_names).or(comments);
     if role.is_none() {
         let (first, last) = (fields[0] + 1, fields[fields.len() - 1] + 1);
@@ -188,6 +185,9 @@ fn repeated<T: Copy>(column: Vec<T>, times: usize) -> Vec<T> {
 
 /// What the blocks of rows count, where no column does.
 fn blocks(lowering: &mut Lowering<'_>, document: &mut Levels) {
+    if let Some(problem) = blocks::odd_title(lowering.source, &lowering.table.layout) {
+        lowering.problems.push(problem);
+    }
     if document.rows != lowering.rows() {
         return;
     }
@@ -215,12 +215,26 @@ fn blocks(lowering: &mut Lowering<'_>, document: &mut Levels) {
     }
     let has_k =
         document.k_index.is_some() || document.k_x.is_some() || document.k_distance.is_some();
-    let apart = [&document.k_x, &document.k_y, &document.k_z];
-    let mut apart = apart.into_iter().flatten();
-    let apart = apart.all(|column| blocks::is_constant(layout, column));
+    let numbers = [&document.k_x, &document.k_y, &document.k_z];
+    let mut numbers = numbers.into_iter().flatten();
+    let constant = numbers.all(|column| blocks::is_constant(layout, column));
+    let points = [
+        &document.k_x,
+        &document.k_y,
+        &document.k_z,
+        &document.k_distance,
+    ];
+    let mut points = points.into_iter().flatten();
+    let same_points = points.all(|column| blocks::repeats(layout, column))
+        && document
+            .k_index
+            .as_ref()
+            .is_none_or(|column| blocks::repeats(layout, column));
+    let bands = document.band.as_ref();
+    let same_bands = bands.is_some_and(|column| blocks::repeats(layout, column));
     let counted = match (has_k, document.band.is_some()) {
-        (true, false) => Some((&mut document.band, "band")),
-        (_, true) if document.k_index.is_none() && apart => {
+        (true, false) if same_points => Some((&mut document.band, "band")),
+        (_, true) if document.k_index.is_none() && constant && same_bands => {
             Some((&mut document.k_index, "k-index"))
         }
         _ => None,

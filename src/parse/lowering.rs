@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use rayon::prelude::*;
 
+use super::cells::is_plain_remark;
 use super::evidence::{Evidence, settled};
 use super::layout::Layout;
 use super::parsed::{Column, Melt, Parsed, columns, provenance};
@@ -15,7 +16,7 @@ use super::table::Table;
 use super::unit_of_column::Units;
 use super::values::{Content, Values, values};
 use super::{Problem, Source};
-use crate::quantity::{AxisKind, Energy, EnergyUnit, Reference};
+use crate::quantity::{AxisKind, Energy, EnergyUnit, MomentumUnit, Reference};
 use crate::schema::{Document, Provenance, Texts};
 
 /// A document that a table can be lowered to.
@@ -73,6 +74,10 @@ fn lowered<T: Lower>(
         missing(source, &table, T::TABLE, hints, problems);
         return None;
     }
+    if let Some(problem) = nameless_text(source, &table) {
+        problems.push(problem);
+    }
+    units_of_numbers(source, &table, T::TABLE, problems);
     let wanted = wanted(&table, every);
     let mut of_values = Problems::default();
     // The hash of the file is made beside the reading.
@@ -127,6 +132,66 @@ fn lowered<T: Lower>(
     }
     *document.provenance_mut() = record;
     Some((document, columns, table, melt))
+}
+
+/// Refuses units of columns that have none, such as an occupation in per cent.
+fn units_of_numbers(source: &Source, table: &Table, kind: Kind, problems: &mut Problems) {
+    for (field, name) in table.names.iter().enumerate() {
+        let Some(role) = table.role_of(field) else {
+            continue;
+        };
+        let below = name.unit.as_ref().map(|(text, _)| text);
+        let of_momentum = matches!(role, Role::KX | Role::KY | Role::KZ | Role::KDistance);
+        let known = |text: &&String| {
+            (of_momentum && MomentumUnit::from_spelling(text).is_some()) || role == Role::Parameter
+        };
+        let Some(unit) = name
+            .reading
+            .units
+            .iter()
+            .chain(below)
+            .find(|text| !known(text))
+        else {
+            continue;
+        };
+        // Temperatures are looked at where they are read.
+        if !kind.has_unit(role) && role != Role::Temperature {
+            let problem = Problem::new(format!("a column of {role} has no unit `{unit}`"));
+            let place = table.place_of(source, field);
+            problems.push(problem.at(place).with_help(
+                "give plain numbers, and a remark elsewhere than in the brackets of a unit",
+            ));
+        }
+    }
+}
+
+/// A text that may change a number in a column that the names leave out.
+fn nameless_text(source: &Source, table: &Table) -> Option<Problem> {
+    let numeric = &table.layout.dialect.numeric;
+    let nameless = |&field: &usize| {
+        let unnamed = table.names[field].text.is_empty() && table.role_of(field).is_none();
+        unnamed && table.line.is_some() && numeric.get(field) == Some(&false)
+    };
+    let fields: Vec<usize> = (0..table.layout.fields()).filter(nameless).collect();
+    if fields.is_empty() {
+        return None;
+    }
+    table.layout.rows(source).find_map(|row| {
+        let spans = table.layout.cells(source, &row).spans;
+        let mut cells = fields.iter().filter_map(|&field| spans.get(field));
+        let span = cells.find(|span| {
+            let text = source.slice((*span).clone());
+            !text.is_empty() && !is_plain_remark(text)
+        })?;
+        Some(
+            Problem::new(format!(
+                "`{}` stands in a column without a name and may change a number",
+                source.slice(span.clone())
+            ))
+            .at(source.place(span.clone()))
+            .with_help("name the column, as in `unit`, or remove it on purpose"),
+        )
+    })
 }
 
 /// The fields to read and what they hold.
@@ -278,8 +343,9 @@ impl Lowering<'_> {
     ) -> Option<Vec<f64>> {
         if let Some(units) = self.field(Role::Unit) {
             let said = self.unit_finder().energy_if_said(role, field);
-            if self.problems.keep(said)?.is_none() {
-                return self.energies_by_row(field, units);
+            match self.problems.keep(said)? {
+                None => return self.energies_by_row(field, units),
+                Some(said) => self.rows_agree(units, &said)?,
             }
         }
         let unit = self.unit_finder().energy(role, field, axis);
@@ -296,6 +362,28 @@ impl Lowering<'_> {
             .map(|field| self.energies(role, field, axis))
             .collect();
         columns.into_iter().collect()
+    }
+
+    /// A column of units must say what the header says.
+    fn rows_agree(&mut self, units: usize, said: &Evidence<EnergyUnit>) -> Option<()> {
+        let Some(Values::Texts(texts)) = self.values.get(&units) else {
+            return Some(());
+        };
+        let other =
+            |text: &str| !text.is_empty() && EnergyUnit::from_spelling(text) != Some(said.value);
+        let Some(row) = texts.iter().position(other) else {
+            return Some(());
+        };
+        let text = texts.get(row).unwrap_or_default();
+        let problem = Problem::new(format!(
+            "the unit of this row is `{text}`, but {} gives {}",
+            said.says, said.value
+        ));
+        let span = self.table.layout.cell(self.source, row, units);
+        let place = self.source.place(span.unwrap_or(0..0));
+        let help = "remove the unit from the one place or correct the other";
+        self.problems.push(problem.at(place).with_help(help));
+        None
     }
 
     fn energies_by_row(&mut self, field: usize, units: usize) -> Option<Vec<f64>> {
@@ -343,6 +431,26 @@ impl Lowering<'_> {
         };
         self.step("reference", format!("{} by {}", zero.value, zero.says));
         Some(zero.value)
+    }
+
+    /// Refuses energies that begin anew: another curve stands below the first.
+    pub fn one_curve(&mut self, energies: &[f64], field: usize) -> Option<()> {
+        let first = *energies.first()?;
+        let again = energies.iter().skip(2).position(|energy| *energy == first);
+        let Some(row) = again.map(|row| row + 2) else {
+            return Some(());
+        };
+        let span = self.table.layout.cell(self.source, row, field);
+        let place = self.source.place(span.unwrap_or(0..0));
+        self.problems.push(
+            Problem::new("the energies begin anew here: the file holds more than one curve")
+                .at(place)
+                .with_help(
+                    "give each curve a file of its own; sweeps of one curve are added where each has a \
+                     title such as `# sweep 1`, and blank lines between them",
+                ),
+        );
+        None
     }
 
     /// What the energies of a field are counted along, where anything says it.

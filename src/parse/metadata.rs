@@ -8,6 +8,7 @@ use super::evidence::Evidence;
 use super::number::Decimal;
 use super::problem::Problems;
 use super::role::{Kind, Role};
+use super::sentence::{self, Heard, Sentence};
 use super::words::{self, Relation};
 use super::{Place, Problem, Source};
 use super::{dialect, header};
@@ -32,15 +33,18 @@ pub(super) struct Metadata {
     /// The known ones: the key, the value, and the statement's index.
     pub known: Vec<(ConditionKey, Value, usize)>,
     /// What is said of the unit of the energies.
-    pub energy_units: Vec<Evidence<EnergyUnit>>,
+    /// The first part says of which energies, where it is not of all.
+    pub energy_units: Vec<(Option<Role>, Evidence<EnergyUnit>)>,
     /// What is said of the unit of the intensities.
     pub intensity_units: Vec<Evidence<IntensityUnit>>,
     /// What is said of the axis.
     pub axes: Vec<Evidence<AxisKind>>,
     /// What is said of the zero.
     pub references: Vec<Evidence<Reference>>,
-    /// Whether the energies are said to be mean-field or quasiparticle ones.
-    pub energy_kind: Option<Evidence<Role>>,
+    /// Which energies, mean-field or quasiparticle ones, are spoken of.
+    pub energy_kinds: Vec<Evidence<Role>>,
+    /// Lines of comments that speak of energies or intensities and are not understood to their end.
+    pub in_part: Vec<usize>,
     /// The decimal mark of the file's numbers.
     decimal: Decimal,
 }
@@ -70,19 +74,8 @@ pub(super) fn read(
             parts.extend(loose(text, kind, decimal));
         }
         if parts.is_empty() {
-            let mut energies = false;
-            for piece in text.split([',', ';']).map(str::trim).take(MOST_PIECES) {
-                let place = source.place(dialect::span_in(text, piece, comment.start));
-                let own = subject(piece).map(|subject| subject.about == UnitOf::Energy);
-                // `energies in Ha, relative to E_F`: the second piece goes on about the first.
-                let sentence = match own {
-                    None if energies => format!("energies {piece}"),
-                    _ => piece.to_owned(),
-                };
-                energies = own.unwrap_or(energies);
-                if let Err(problem) = metadata.sentence(&sentence, &place, kind) {
-                    problems.push(problem);
-                }
+            if let Err(problem) = metadata.listen(source, &comment, kind) {
+                problems.push(problem);
             }
             continue;
         }
@@ -126,7 +119,8 @@ fn loose(text: &str, kind: Kind, decimal: Decimal) -> Option<(Range<usize>, Rang
         }
         let (known, unit) = condition::recognise(key, kind)?;
         // A short word may be the name of a column: its value must be one.
-        condition::read(known, &with_point(value, decimal), unit.as_deref()).ok()?;
+        let text_of_value = with_point(value, decimal);
+        condition::read(known, &text_of_value, unit.as_deref()).ok()?;
         let at = |part: &str| dialect::span_in(text, part, 0);
         Some((at(key), at(value)))
     })
@@ -272,8 +266,8 @@ impl Metadata {
 
     fn energy_unit(&mut self, text: &str, place: &Place) -> bool {
         let unit = EnergyUnit::from_spelling(text);
-        self.energy_units
-            .extend(unit.map(|unit| Evidence::at(unit, Self::says(place), place.clone())));
+        let evidence = |unit| (None, Evidence::at(unit, Self::says(place), place.clone()));
+        self.energy_units.extend(unit.map(evidence));
         unit.is_some()
     }
 
@@ -284,39 +278,47 @@ impl Metadata {
         unit.is_some()
     }
 
-    /// A sentence such as `All energies are in eV relative to the Fermi level`.
-    fn sentence(&mut self, text: &str, place: &Place, kind: Kind) -> Result<(), Problem> {
-        let text = text.trim_end_matches('.');
-        let Some(Subject { about, of, rest }) = subject(text) else {
-            return Ok(());
-        };
-        if let Some(role) = of {
-            let evidence = Evidence::at(role, Self::says(place), place.clone());
-            match &self.energy_kind {
-                Some(known) if known.value != role => {
-                    return Err(Problem::new(
-                        "the comments call the energies mean-field and quasiparticle ones",
-                    )
-                    .at(place.clone())
-                    .with_help("keep one table in a file, and say which it is"));
-                }
-                _ => self.energy_kind = Some(evidence),
+    /// A comment of sentences such as `All energies are in eV relative to the Fermi level`.
+    fn listen(
+        &mut self,
+        source: &Source,
+        comment: &Range<usize>,
+        kind: Kind,
+    ) -> Result<(), Problem> {
+        let text = source.slice(comment.clone());
+        let whole = match sentence::hear(text) {
+            Heard::Nothing => return Ok(()),
+            Heard::InPart => {
+                self.in_part.push(source.place(comment.clone()).line);
+                return Ok(());
             }
+            Heard::Whole(whole) => whole,
+        };
+        for (span, sentence) in whole {
+            let place = source.place(comment.start + span.start..comment.start + span.end);
+            self.take(&sentence, &place, kind)?;
         }
-        let relation = words::relation(rest);
-        let rest = relation.map_or(rest, |(before, ..)| before);
-        let unit = rest.trim().strip_prefix("in ").map(str::trim);
-        if let Some(unit) = unit {
-            // The sentence may end with the point of `a.u.`
-            let unit = if unit == "a.u" { "a.u." } else { unit };
-            match about {
-                UnitOf::Intensity => self.intensity_unit(unit, place),
-                _ => self.energy_unit(unit, place),
-            };
+        Ok(())
+    }
+
+    fn take(&mut self, sentence: &Sentence, place: &Place, kind: Kind) -> Result<(), Problem> {
+        let says = || Self::says(place);
+        if let Some(role) = sentence.of {
+            self.energy_kinds
+                .push(Evidence::at(role, says(), place.clone()));
         }
-        let only_zero = unit.is_some() || rest.trim().is_empty();
-        let (Some((_, direction, zero)), true, UnitOf::Energy) = (relation, only_zero, about)
-        else {
+        match sentence.unit {
+            Some(sentence::Unit::Energy(unit)) => {
+                let evidence = Evidence::at(unit, says(), place.clone());
+                self.energy_units.push((sentence.of, evidence));
+            }
+            Some(sentence::Unit::Intensity(unit)) => {
+                let evidence = Evidence::at(unit, says(), place.clone());
+                self.intensity_units.push(evidence);
+            }
+            None => {}
+        }
+        let Some((direction, zero)) = sentence.zero else {
             return Ok(());
         };
         let axis = match direction {
@@ -331,10 +333,10 @@ impl Metadata {
             Relation::Above => Some(AxisKind::FinalState),
             Relation::From => None,
         };
-        let evidence = |axis| Evidence::at(axis, Self::says(place), place.clone());
-        self.axes.extend(axis.map(evidence));
+        self.axes
+            .extend(axis.map(|axis| Evidence::at(axis, says(), place.clone())));
         self.references
-            .push(Evidence::at(zero, Self::says(place), place.clone()));
+            .push(Evidence::at(zero, says(), place.clone()));
         Ok(())
     }
 }
@@ -356,49 +358,12 @@ fn unit_key(key: &str) -> Option<UnitOf> {
     let words: Vec<&str> = words.iter().map(String::as_str).collect();
     Some(match words.as_slice() {
         ["unit" | "units"] => UnitOf::Either,
-        ["energy" | "energies", "unit" | "units"] | ["unit" | "units", "energy" | "energies"] => {
-            UnitOf::Energy
-        }
+        ["energies"]
+        | ["energy" | "energies", "unit" | "units"]
+        | ["unit" | "units", "energy" | "energies"] => UnitOf::Energy,
         ["intensity" | "intensities", "unit" | "units"]
         | ["unit" | "units", "intensity" | "intensities"] => UnitOf::Intensity,
         _ => return None,
-    })
-}
-
-/// The subject of a sentence about energies or intensities.
-struct Subject<'a> {
-    about: UnitOf,
-    /// Mean-field or quasiparticle energies.
-    of: Option<Role>,
-    /// What follows, with the blank before it, so that a relation may stand first.
-    rest: &'a str,
-}
-
-fn subject(text: &str) -> Option<Subject<'_>> {
-    let (mut about, mut of) = (None, None);
-    let mut at = 0;
-    for word in text.split_inclusive(' ') {
-        match word.trim().to_lowercase().as_str() {
-            "" | "all" | "the" | "band" | "given" | "are" | "is" | "measured" => {}
-            "energies" | "energy" | "eigenvalues" if about.is_none() => {
-                about = Some(UnitOf::Energy);
-            }
-            "intensities" | "intensity" if about.is_none() => about = Some(UnitOf::Intensity),
-            "quasiparticle" | "qp" | "gw" | "g0w0" if about.is_none() => {
-                of = Some(Role::EnergyQuasiparticle);
-            }
-            "mean-field" | "kohn-sham" | "ks" | "dft" | "hartree-fock" if about.is_none() => {
-                of = Some(Role::EnergyMeanField);
-            }
-            _ => break,
-        }
-        at += word.len();
-    }
-    let start = at.saturating_sub(usize::from(text[..at].ends_with(' ')));
-    about.map(|about| Subject {
-        about,
-        of,
-        rest: &text[start..],
     })
 }
 
@@ -468,7 +433,7 @@ mod tests {
             let (metadata, problems) = of(text, Kind::Levels);
             assert_eq!(problems, [], "{text}");
             assert_eq!(
-                metadata.energy_units.first().map(|e| e.value),
+                metadata.energy_units.first().map(|(_, e)| e.value),
                 unit,
                 "{text}"
             );

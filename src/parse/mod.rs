@@ -40,6 +40,7 @@ mod quantity_text;
 mod reference;
 mod regroup;
 mod role;
+mod sentence;
 mod series;
 mod skipped;
 mod source;

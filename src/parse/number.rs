@@ -105,7 +105,7 @@ pub(super) fn is_missing(text: &str) -> bool {
         || only(b'*')
         || matches!(
             text,
-            "–" | "—" | "n/a" | "N/A" | "NA" | "n.a." | "null" | "NULL"
+            "–" | "—" | "n/a" | "N/A" | "NA" | "n.a." | "null" | "NULL" | "None" | "<NA>" | "#N/A"
         )
 }
 

@@ -358,7 +358,9 @@ impl Kind {
         let general =
             role == Role::Energy && matches!(self, Self::Levels | Self::Gaps | Self::Series);
         let own = self.roles().contains(&role);
-        let intensity = self == Self::Spectrum || matches!(role, Role::Density | Role::Momentum);
+        let of_density = self == Self::Density && role == Role::Projection;
+        let intensity =
+            self == Self::Spectrum || of_density || matches!(role, Role::Density | Role::Momentum);
         general || (own && (role.is_energy(self) || intensity))
     }
 

@@ -15,6 +15,8 @@ pub struct Skipped {
     pub reason: String,
 }
 
+/// Why a comment on energies may be no evidence.
+const IN_PART: &str = "a comment that is not understood to its end, so that nothing of it is used";
 /// Characters of a skipped line that are shown.
 const QUOTED: usize = 60;
 /// Lines that are listed.
@@ -60,6 +62,8 @@ pub(super) fn skipped(source: &Source, table: &Table) -> (Vec<Skipped>, usize) {
             let text = place.excerpt.trim();
             let cut = text.chars().nth(QUOTED).map_or("", |_| "…");
             let quoted: String = text.chars().take(QUOTED).collect();
+            let in_part = table.metadata.in_part.contains(&place.line);
+            let reason = if in_part { IN_PART } else { reason };
             (place.line, reason, quoted + cut)
         })
         .filter(|(line, ..)| !understood.contains(line))
@@ -84,9 +88,10 @@ fn understood(table: &Table) -> BTreeSet<usize> {
         metadata
             .energy_units
             .iter()
-            .map(|e| &e.place)
+            .map(|(_, e)| &e.place)
             .collect::<Vec<_>>(),
         metadata.intensity_units.iter().map(|e| &e.place).collect(),
+        metadata.energy_kinds.iter().map(|e| &e.place).collect(),
         metadata.axes.iter().map(|e| &e.place).collect(),
         metadata.references.iter().map(|e| &e.place).collect(),
     ];

@@ -1,11 +1,12 @@
 //! Tables of a measured curve.
 
-use super::blocks;
+use super::blocks::{self, Numbered};
 use super::condition::set_condition;
 use super::evidence::Evidence;
 use super::lowering::{self, Lower, Lowering};
 use super::parsed::Parsed;
 use super::role::{Hints, Kind, Role};
+use super::title::Counted;
 use super::{Problem, Source};
 use crate::quantity::{AxisKind, IntensityUnit};
 use crate::schema::{Conditions, Document, IntensityKind, Provenance, Spectrum};
@@ -52,6 +53,7 @@ impl Lower for Spectrum {
             conditions: conditions(lowering),
         };
         add_sweeps(lowering, &mut document);
+        lowering.one_curve(&document.energy_ev, energy)?;
         Some(document)
     }
 
@@ -155,9 +157,21 @@ fn together(lowering: &mut Lowering<'_>, sweeps: &[Vec<f64>], unit: IntensityUni
 
 /// Adds sweeps that stand below one another in blocks with the same energies.
 fn add_sweeps(lowering: &mut Lowering<'_>, document: &mut Spectrum) {
-    let Some(length) = blocks::equal_blocks(&lowering.table.layout) else {
+    let layout = &lowering.table.layout;
+    let Some(length) = blocks::equal_blocks(layout) else {
         return;
     };
+    // Only what calls itself a sweep is one: the blocks may be angles or samples.
+    let titled = blocks::by_titles(lowering.source, layout, Counted::Sweep);
+    let each = |numbered: Numbered| {
+        let mut blocks = numbered.numbers.chunks(length);
+        let firsts: Vec<i64> = blocks.clone().map(|block| block[0]).collect();
+        blocks.all(|block| block.iter().all(|number| *number == block[0]))
+            && firsts.windows(2).all(|pair| pair[0] < pair[1])
+    };
+    if !titled.is_some_and(each) {
+        return;
+    }
     let mut energies = document.energy_ev.chunks(length);
     let first = energies.next().unwrap_or_default();
     if document.standard_uncertainty.is_some() || energies.any(|block| block != first) {

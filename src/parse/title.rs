@@ -54,6 +54,17 @@ pub(super) fn title(line: &str) -> Option<Title> {
     })
 }
 
+/// Whether a line begins as a title does: with a word for what is counted, and a number.
+pub(super) fn is_like_title(line: &str) -> bool {
+    let text = line.trim();
+    let name = text
+        .bytes()
+        .take(LONGEST + 1)
+        .position(|b| b.is_ascii_digit() || matches!(b, b'=' | b':' | b'#'));
+    name.and_then(|at| text.get(..at))
+        .is_some_and(|name| counted(name.trim()).is_some())
+}
+
 /// The longest name of what a title counts, in bytes.
 const LONGEST: usize = 20;
 

@@ -45,7 +45,12 @@ impl Units<'_> {
         role: Role,
         field: usize,
     ) -> Result<Option<Evidence<EnergyUnit>>, Problem> {
-        let comments = self.table.metadata.energy_units.clone();
+        let all = self.table.metadata.energy_units.iter();
+        // What is said of mean-field or quasiparticle energies is said of no other.
+        let comments = all
+            .filter(|(of, _)| role == Role::BandEnergy || of.is_none_or(|of| of == role))
+            .map(|(_, unit)| unit.clone())
+            .collect();
         self.unit(role, field, EnergyUnit::from_spelling, &[], comments)
     }
 
@@ -156,7 +161,7 @@ impl Units<'_> {
             None => Err(Problem::new(format!(
                 "{says}: `{text}` is not the spelling of a unit for it"
             ))
-            .with_help(spellings(role))),
+            .with_help(spellings(role, self.kind))),
         }
     }
 
@@ -178,7 +183,7 @@ impl Units<'_> {
         .at(place)
         .with_help(format!(
             "{}; a remark goes elsewhere than in the brackets of a unit",
-            spellings(role)
+            spellings(role, self.kind)
         ))
     }
 
@@ -192,12 +197,12 @@ impl Units<'_> {
         problem.with_help(format!(
             "write it in the header, or as {}; {}",
             self.hints.setting(&format!("unit.{role} = \"{example}\"")),
-            spellings(role)
+            spellings(role, self.kind)
         ))
     }
 }
 
-fn spellings(role: Role) -> String {
+fn spellings(role: Role, kind: Kind) -> String {
     match role {
         Role::Momentum => {
             let all: Vec<&str> = MomentumUnit::ALL
@@ -210,6 +215,7 @@ fn spellings(role: Role) -> String {
         Role::Density | Role::Projection => {
             "densities of states are in states/eV, states/Ha, states/Ry or arb. u.".to_owned()
         }
+        Role::StandardUncertainty if kind != Kind::Spectrum => spellings(Role::Energy, kind),
         Role::Intensity | Role::Sweep | Role::StandardUncertainty => {
             "intensities are in counts, counts/s or arb. u.".to_owned()
         }

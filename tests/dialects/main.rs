@@ -31,10 +31,8 @@ fn outcome(kind: Kind, seed: u64) -> Outcome {
     let mut random = ChaCha8Rng::seed_from_u64(seed);
     let table = tables::table(kind, &mut random);
     let (bytes, expected) = dress::written(&table, &mut random);
-    let shown = String::from_utf8_lossy(&bytes)
-        .chars()
-        .take(1_500)
-        .collect::<String>();
+    let decoded = Source::from_bytes("table", bytes.clone());
+    let shown = decoded.map_or_else(|_| String::new(), |source| source.text().to_owned());
     let read = Source::from_bytes("table", bytes)
         .map_err(|problem| vec![problem])
         .and_then(|source| read_any(source, None, &Hints::default()));

@@ -310,7 +310,7 @@ fn spectrum(table: &mut Table, random: &mut Random) {
         0 => {
             for sweep in 1..=random.random_range(2..5) {
                 let cells = counts(random);
-                let name = format!("{} {sweep}", pick(random, &["sweep", "counts", "scan"]));
+                let name = format!("{} {sweep}", pick(random, &["sweep", "scan"]));
                 let mut sweep = column("intensity", &name, Quantity::Intensity, cells);
                 sweep.quantity = if name.starts_with("counts") {
                     Quantity::None
