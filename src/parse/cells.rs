@@ -3,14 +3,21 @@
 use std::borrow::Cow;
 use std::ops::Range;
 
-use super::Source;
 use super::dialect::{Delimiter, Dialect, span_in};
 use super::number::{is_missing, number_in};
+use super::{Problem, Source};
 
 pub(super) const BLANKS: [char; 2] = [' ', '\t'];
 
 /// The bytes that are wrong in a line, and what is.
 pub(super) type Unquotable = (Range<usize>, &'static str);
+
+/// The problem that a cell is not quoted as it should be.
+pub(super) fn unquotable(source: &Source, (span, what): Unquotable) -> Problem {
+    Problem::new(what).at(source.place(span)).with_help(
+        "end the cell with a quote on its line, and double a quote that belongs to its text",
+    )
+}
 
 /// The cells of a row.
 #[derive(Debug, Clone, PartialEq)]
