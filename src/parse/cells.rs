@@ -15,7 +15,7 @@ pub(super) type Unquotable = (Range<usize>, &'static str);
 /// The problem that a cell is not quoted as it should be.
 pub(super) fn unquotable(source: &Source, (span, what): Unquotable) -> Problem {
     Problem::new(what).at(source.place(span)).with_help(
-        "end the cell with a quote on its line, and double a quote that belongs to its text",
+        "a quoted cell begins and ends with a quote, on one line; double a quote within it",
     )
 }
 
