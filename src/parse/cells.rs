@@ -3,15 +3,22 @@
 use std::borrow::Cow;
 use std::ops::Range;
 
-use super::Source;
 use super::dialect::{Delimiter, Dialect, span_in};
 use super::header;
 use super::number::{has_decimal_comma, is_missing, number, number_in};
+use super::{Problem, Source};
 
 pub(super) const BLANKS: [char; 2] = [' ', '\t'];
 
 /// The bytes that are wrong in a line, and what is.
 pub(super) type Unquotable = (Range<usize>, &'static str);
+
+/// The problem that a cell is not quoted as it should be.
+pub(super) fn unquotable(source: &Source, (span, what): Unquotable) -> Problem {
+    Problem::new(what).at(source.place(span)).with_help(
+        "a quoted cell begins and ends with a quote, on one line; double a quote within it",
+    )
+}
 
 /// The cells of a row.
 #[derive(Debug, Clone, PartialEq)]

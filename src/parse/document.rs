@@ -3,6 +3,7 @@
 use serde_json::Value;
 
 use super::parsed::{Manner, Parsed};
+use super::problem::visible;
 use super::role::Kind;
 use super::{Problem, Source};
 use crate::schema::Document;
@@ -67,8 +68,9 @@ pub(super) fn kind(source: &Source) -> Result<Kind, Problem> {
     Kind::from_name(&kind).ok_or_else(|| {
         let kinds: Vec<&str> = Kind::ALL.into_iter().map(Kind::name).collect();
         Problem::new(format!(
-            "`{}` is `bandrule/{kind}`, which is not read here; expected one of {}",
+            "`{}` is `bandrule/{}`, which is not read here; expected one of {}",
             source.name(),
+            visible(&kind),
             kinds.join(", ")
         ))
     })
@@ -97,5 +99,7 @@ fn broken(source: &Source, error: &serde_json::Error) -> Problem {
     let at = line.map_or(0, |line| {
         line.start + error.column().saturating_sub(1).min(line.end - line.start)
     });
-    Problem::new(format!("this is no document: {error}")).at(source.place(at..at))
+    Problem::new(format!("this is no document: {error}"))
+        .at(source.place(at..at))
+        .with_help("the file is damaged, was cut short or was edited: convert the original again")
 }

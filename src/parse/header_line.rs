@@ -2,15 +2,23 @@
 
 use std::ops::Range;
 
+use rayon::prelude::*;
+
 use super::cells::{self, Unquotable};
 use super::dialect::Delimiter;
 use super::header::{self, Reading};
 use super::layout::{Aside, Layout};
 use super::metadata;
 use super::number::number;
+use super::problem::visible;
 use super::regroup::{self, Ungrouped};
 use super::role::{ColumnChoice, Hints, Kind};
 use super::{Problem, Source};
+
+/// Cells that one task reads.
+const AT_ONCE: usize = 1_000;
+/// Lines above the names in which other names are looked for.
+const MOST_ABOVE: usize = 1_000;
 
 /// The header of one column.
 #[derive(Debug, Clone, PartialEq)]
@@ -143,7 +151,8 @@ fn bare_header(
         .bare
         .iter()
         .rev()
-        .filter(|other| other.start < line.start);
+        .filter(|other| other.start < line.start)
+        .take(MOST_ABOVE);
     let above = above.cloned().chain(comment_header(source, layout, None));
     let other = naming(source, layout, above, kind).find(|(_, names)| known(names) > known(own));
     if let (Some((other, _)), false) = (other, chosen(own, hints)) {
@@ -156,7 +165,7 @@ fn bare_header(
     let of_number = names.iter().find(|name| number(&name.text).is_some());
     match of_number.and_then(|name| Some((name, name.span.clone()?))) {
         Some((name, span)) => {
-            let why = format!("`{}` is a number among names", name.text);
+            let why = format!("`{}` is a number among names", visible(&name.text));
             Err(neither(source, span, &why))
         }
         None => Ok(names),
@@ -227,7 +236,8 @@ pub(super) type Cell = (String, Range<usize>);
 
 fn names(cells: Vec<Cell>, kind: Kind) -> Vec<Name> {
     cells
-        .into_iter()
+        .into_par_iter()
+        .with_min_len(AT_ONCE)
         .map(|(text, span)| Name {
             reading: header::read(&text, kind),
             text,
@@ -248,7 +258,7 @@ impl Mismatch {
     fn problem(self, source: &Source, layout: &Layout, line: &Range<usize>) -> Problem {
         let fields = layout.fields();
         match self {
-            Self::Quotes((span, what)) => Problem::new(what).at(source.place(span)),
+            Self::Quotes(why) => cells::unquotable(source, why),
             Self::Count(found) => Problem::new(format!(
                 "the header has {found} cells, but the rows have {fields} fields {}",
                 layout.dialect.delimiter.in_words()

@@ -15,6 +15,10 @@ use super::{Problem, Source};
 const ANCHOR_ROWS: usize = 1_000;
 /// Rows from which the dialect is concluded.
 const SAMPLE_ROWS: usize = 1_000;
+/// Bytes of rows that are enough for it.
+const SAMPLE_BYTES: usize = 4 << 20;
+/// Bytes of a line beyond which it is no table's: a million numbers.
+const MOST_LINE: usize = 16 << 20;
 /// Bytes that are scanned at once. It does not depend on the machine, so that nothing else does.
 const CHUNK: usize = 1 << 20;
 
@@ -51,6 +55,7 @@ pub(super) struct Layout {
 impl Layout {
     /// Finds the lines, refused where there are no rows of numbers.
     pub fn of(source: &Source, hints: &Hints) -> Result<Self, Problem> {
+        short_lines(source)?;
         let sample = sample(source);
         if sample.is_empty() {
             return Err(no_rows(source));
@@ -198,6 +203,20 @@ impl Layout {
     }
 }
 
+/// Refuses lines that no table has, among the first.
+fn short_lines(source: &Source) -> Result<(), Problem> {
+    let mut lines = source.lines_from(0).take(SAMPLE_ROWS);
+    let long = lines.find(|line| line.end - line.start > MOST_LINE);
+    long.map_or(Ok(()), |line| {
+        Err(Problem::new(format!(
+            "a line of {} bytes; no table has one of more than {MOST_LINE}",
+            line.end - line.start
+        ))
+        .at(source.place(line.start..line.start))
+        .with_help("write every row of the table on a line of its own, and no binary data"))
+    })
+}
+
 /// Up to a number of rows as they look before the dialect is known. Where no line looks like a row,
 /// every line with something in it that is no comment.
 fn sample(source: &Source) -> Vec<Range<usize>> {
@@ -211,11 +230,22 @@ fn sample(source: &Source) -> Vec<Range<usize>> {
             })
     };
     let before = |span: &Range<usize>| !line::tells_dialect(source.slice(span.clone()));
-    let numeric: Vec<_> = spans().skip_while(before).take(SAMPLE_ROWS).collect();
+    let numeric = first(spans().skip_while(before));
     match numeric.is_empty() {
-        true => spans().take(SAMPLE_ROWS).collect(),
+        true => first(spans()),
         false => numeric,
     }
+}
+
+/// The rows of a sample: all until they are many.
+fn first(spans: impl Iterator<Item = Range<usize>>) -> Vec<Range<usize>> {
+    let mut bytes = 0;
+    let few = spans.take(SAMPLE_ROWS).take_while(|span| {
+        let room = bytes < SAMPLE_BYTES;
+        bytes += span.len();
+        room
+    });
+    few.collect()
 }
 
 /// The first byte of the first row, and the lines before it.
@@ -349,6 +379,16 @@ mod tests {
         let source = Source::from_text("t", text);
         let layout = Layout::of(&source, &Hints::default()).unwrap();
         (source, layout)
+    }
+
+    #[test]
+    fn line_that_no_table_has_is_refused_and_few_bytes_are_sampled() {
+        let long = format!("E,I\n{}\n", "1,".repeat(MOST_LINE / 2 + 1));
+        let source = Source::from_text("t", &long);
+        let refused = Layout::of(&source, &Hints::default()).unwrap_err();
+        assert_eq!(refused.place.unwrap().line, 2);
+        let wide = ("1 ".repeat(SAMPLE_BYTES / 8) + "\n").repeat(9);
+        assert_eq!(sample(&Source::from_text("t", &wide)).len(), 4);
     }
 
     #[test]

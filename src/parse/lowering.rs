@@ -8,7 +8,7 @@ use super::cells::is_plain_remark;
 use super::evidence::{Evidence, settled};
 use super::layout::Layout;
 use super::parsed::{Column, Melt, Parsed, columns, provenance};
-use super::problem::Problems;
+use super::problem::{Problems, visible};
 use super::reference::reference;
 use super::role::{Hints, Kind, Role};
 use super::summary::Summary;
@@ -483,7 +483,7 @@ impl Lowering<'_> {
                 "nothing says what the energies in column {} `{}` are counted along: kinetic, \
                  binding, final-state or photon",
                 field + 1,
-                self.table.names[field].text
+                visible(&self.table.names[field].text)
             ));
             self.problems.push(
                 problem

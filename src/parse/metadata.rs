@@ -3,6 +3,8 @@
 use std::borrow::Cow;
 use std::ops::Range;
 
+use memchr::{memchr2, memchr2_iter};
+
 use super::condition::{self, ConditionKey, Value};
 use super::evidence::Evidence;
 use super::number::Decimal;
@@ -149,9 +151,9 @@ const SEPARATORS: [char; 6] = [' ', '\t', ',', ';', '|', '"'];
 fn statements(text: &str) -> Vec<(Range<usize>, Range<usize>)> {
     let mut pieces = Vec::new();
     let mut start = 0;
-    for (at, mark) in text.match_indices([',', ';']) {
+    for at in memchr2_iter(b',', b';', text.as_bytes()) {
         pieces.push(start..at);
-        start = at + mark.len();
+        start = at + 1;
     }
     pieces.push(start..text.len());
     let pairs: Vec<_> = pieces.into_iter().map(|piece| pair(text, piece)).collect();
@@ -165,7 +167,7 @@ fn statements(text: &str) -> Vec<(Range<usize>, Range<usize>)> {
 }
 
 fn pair(text: &str, piece: Range<usize>) -> Option<(Range<usize>, Range<usize>)> {
-    let at = piece.start + text[piece.clone()].find([':', '='])?;
+    let at = piece.start + memchr2(b':', b'=', text[piece.clone()].as_bytes())?;
     let key = text[piece.start..at].trim();
     let value = text[at + 1..piece.end].trim_end();
     (!key.is_empty() && !value.trim().is_empty()).then(|| {
@@ -230,11 +232,9 @@ impl Metadata {
         value: &Value,
         statement: &Statement,
     ) -> Result<(), Problem> {
-        let before = self
-            .known
-            .iter()
-            .find(|(known, other, _)| *known == key && other != value);
-        let Some((_, _, index)) = before else {
+        // All before are the same as the first of them.
+        let mut before = self.known.iter().filter(|(known, ..)| *known == key);
+        let Some((_, _, index)) = before.next().filter(|(_, other, _)| other != value) else {
             return Ok(());
         };
         let other = &self.statements[*index];

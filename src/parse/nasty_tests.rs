@@ -277,3 +277,45 @@ fn an_uncertainty_takes_the_unit_that_the_user_gives_its_value() {
     let read = any("material,gap,gap error\nalpha,600,20\n", &hints).unwrap();
     assert_eq!(read["uncertainty_ev"][0], 0.02);
 }
+
+#[test]
+fn long_names_and_kinds_are_cut_in_messages() {
+    let name = "(eV)(Ha)".repeat(5_000);
+    let document = format!("{{\"schema\":\"bandrule/{name}/1\"}}");
+    for text in [
+        format!("E {name},counts\n1,2\n"),
+        format!("E {{{name},counts\n1,2\n"),
+        document,
+    ] {
+        for problem in read_any(Source::from_text("t", &text), None, &Hints::default()).unwrap_err()
+        {
+            assert!(problem.message.len() < 1_000, "{}", problem.message.len());
+        }
+    }
+}
+
+#[test]
+fn broken_quotes_and_documents_say_what_to_do() {
+    for text in [
+        "KE (eV),counts\n1,\"2\n2,3\n",
+        "KE (eV),\"counts\n1,2\n2,3\n",
+        "{\"schema\":\"bandrule/spectrum/1\",",
+    ] {
+        let problems = read_any(Source::from_text("t", text), None, &Hints::default()).unwrap_err();
+        assert!(problems[0].help.is_some(), "{}", problems[0]);
+    }
+}
+
+#[test]
+fn many_comments_and_names_above_a_table_take_no_long() {
+    let begun = Instant::now();
+    let curve = "KE (eV),counts\n1,2\n2,3\n";
+    for many in ["# T: 300 K\n", "# nothing\n", "KE (eV),counts\n"] {
+        read_spectrum(
+            Source::from_text("t", &(many.repeat(50_000) + curve)),
+            &Hints::default(),
+        )
+        .unwrap();
+    }
+    assert!(begun.elapsed() < Duration::from_secs(5));
+}

@@ -15,7 +15,7 @@ use super::decode::{Decoded, Encoding, decode, plain_text};
 use crate::schema::SourceRecord;
 
 /// Lines between two remembered line starts.
-const ANCHOR_LINES: usize = 1_000;
+const ANCHOR_LINES: usize = 32;
 /// Bytes from the beginning in which lines are counted without anchors.
 const NEAR: usize = 1 << 16;
 /// Bytes of a file that one task reads.
@@ -36,8 +36,9 @@ pub struct Source {
     text: Arc<String>,
     encoding: Encoding,
     gzip: bool,
-    record: OnceLock<SourceRecord>,
-    anchors: OnceLock<Vec<usize>>,
+    /// Shared by clones, of which a file of many curves has many.
+    record: Arc<OnceLock<SourceRecord>>,
+    anchors: Arc<OnceLock<Vec<usize>>>,
 }
 
 impl PartialEq for Source {
@@ -111,7 +112,7 @@ impl Source {
             Err(bytes) => {
                 let record = record_of(shown, &bytes);
                 let mut source = Self::new(shown, decode(shown, bytes)?);
-                source.record = record.into();
+                source.record = Arc::new(record.into());
                 Ok(source)
             }
         }
@@ -123,8 +124,8 @@ impl Source {
             text: Arc::new(decoded.text),
             encoding: decoded.encoding,
             gzip: decoded.gzip,
-            record: OnceLock::new(),
-            anchors: OnceLock::new(),
+            record: Arc::default(),
+            anchors: Arc::default(),
         }
     }
 

@@ -56,17 +56,18 @@ impl File {
         }
     }
 
-    /// What the energies and the intensities of a curve are called.
-    fn labels(&self, curve: usize) -> [String; 2] {
+    /// What the energies and the intensities of each curve are called.
+    fn labels(&self) -> Vec<[String; 2]> {
         match self {
-            Self::Iso14976(file) => file.labels(curve),
+            Self::Iso14976(file) => (0..file.blocks.len()).map(|at| file.labels(at)).collect(),
             Self::JcampDx(file) => {
-                file.blocks()
-                    .get(curve)
-                    .map_or_else(Default::default, |block| {
-                        ["XUNITS", "YUNITS"]
-                            .map(|label| block.text(label).unwrap_or_default().to_owned())
-                    })
+                let text = |block: &jcamp_dx::Block, label: &str| {
+                    block.text(label).unwrap_or_default().to_owned()
+                };
+                let blocks = file.blocks().into_iter();
+                blocks
+                    .map(|block| ["XUNITS", "YUNITS"].map(|label| text(&block, label)))
+                    .collect()
             }
         }
     }
@@ -147,6 +148,7 @@ fn parsed_curves(
     if curves.is_empty() {
         return Err(no_spectrum(source, file, &skipped));
     }
+    let labels = file.labels();
     let parsed = curves.into_iter().map(|(index, spectrum)| {
         let manner = Manner {
             dialect: format!("{}, curve {} of {count}", file.name(), index + 1),
@@ -157,7 +159,7 @@ fn parsed_curves(
             skipped_lines: skipped.len(),
             ..Manner::default()
         };
-        let columns = columns(file, index, &spectrum, every);
+        let columns = columns(&labels[index], &spectrum, every);
         let curve = Curve {
             file: file.clone(),
             index,
@@ -179,10 +181,13 @@ fn no_spectrum(source: &Source, file: &File, skipped: &[Skipped]) -> Problem {
         file.name(),
         reasons.join("; ")
     ))
+    .with_help(
+        "give a file with a curve of intensities over energies, or write that part as a table",
+    )
 }
 
-fn columns(file: &File, index: usize, spectrum: &Spectrum, every: bool) -> Vec<Column> {
-    let [energy, intensity] = file.labels(index);
+fn columns(labels: &[String; 2], spectrum: &Spectrum, every: bool) -> Vec<Column> {
+    let [energy, intensity] = labels;
     let summary = |values: &Vec<f64>| every.then(|| Summary::of(&Values::Numbers(values.clone())));
     let column = |index, role, header: &str, unit: &str, values| Column {
         header: header.to_owned(),
@@ -194,7 +199,7 @@ fn columns(file: &File, index: usize, spectrum: &Spectrum, every: bool) -> Vec<C
     };
     let unit = parsed::intensity_symbol(spectrum.intensity_kind);
     vec![
-        column(0, Role::Energy, &energy, "eV", &spectrum.energy_ev),
-        column(1, Role::Intensity, &intensity, unit, &spectrum.intensity),
+        column(0, Role::Energy, energy, "eV", &spectrum.energy_ev),
+        column(1, Role::Intensity, intensity, unit, &spectrum.intensity),
     ]
 }

@@ -256,7 +256,7 @@ impl Table {
         [one, other]: [usize; 2],
         hints: &Hints,
     ) -> Problem {
-        let (first, second) = (&self.names[one].text, &self.names[other].text);
+        let [first, second] = [one, other].map(|field| visible(&self.names[field].text));
         Problem::new(format!(
             "columns {} `{first}` and {} `{second}` both read as {role}",
             one + 1,
@@ -301,7 +301,7 @@ impl Table {
         match self.line {
             Some(line) => format!(
                 "the header cell `{}` on line {line}",
-                self.names[field].text
+                visible(&self.names[field].text)
             ),
             None => format!("column {}", field + 1),
         }

@@ -232,7 +232,10 @@ fn refusals_of_levels() {
     levels.csv:1:1: the header can be read in more than one way as 2 columns: energy | KS energy or energy KS | energy
       help: separate the names by two blanks or more, or by commas
     ");
-    insta::assert_snapshot!(refused("k,\"E_QP (eV)\n1,2\n", &hints()), @"levels.csv:1:3: a quoted cell does not end on its line");
+    insta::assert_snapshot!(refused("k,\"E_QP (eV)\n1,2\n", &hints()), @r"
+    levels.csv:1:3: a quoted cell does not end on its line
+      help: a quoted cell begins and ends with a quote, on one line; double a quote within it
+    ");
     let unit = Hints {
         units: [(Role::EnergyQuasiparticle, "Ha".into())].into(),
         ..hints()

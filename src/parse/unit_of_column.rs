@@ -3,6 +3,7 @@
 use std::fmt::Display;
 
 use super::evidence::{Evidence, agree, settled};
+use super::problem::visible;
 use super::role::{Hints, Kind, Role};
 use super::table::Table;
 use super::{Place, Problem, Source};
@@ -178,7 +179,8 @@ impl Units<'_> {
     fn unknown_at(&self, text: &str, field: usize, says: &str, place: Place) -> Problem {
         let role = self.table.role_of(field).unwrap_or(Role::Energy);
         Problem::new(format!(
-            "`{text}` in {says} is not the spelling of a unit for it"
+            "`{}` in {says} is not the spelling of a unit for it",
+            visible(text)
         ))
         .at(place)
         .with_help(format!(
@@ -191,7 +193,7 @@ impl Units<'_> {
         let problem = Problem::new(format!(
             "nothing says the unit of column {} `{}`, read as {role}",
             field + 1,
-            self.table.names[field].text
+            visible(&self.table.names[field].text)
         ))
         .at(self.table.place_of(self.source, field));
         problem.with_help(format!(

@@ -308,7 +308,7 @@ impl Reader<'_> {
 
     fn no_row(&self, why: NoRow, line: &Range<usize>) -> Problem {
         match why {
-            NoRow::Quotes((span, what)) => Problem::new(what).at(self.source.place(span)),
+            NoRow::Quotes(why) => cells::unquotable(self.source, why),
             NoRow::Count(found, spans) => {
                 ragged(self.source, &self.layout.dialect, line, found, &spans)
             }
