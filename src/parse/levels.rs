@@ -2,6 +2,7 @@
 
 use super::blocks::{self, Numbered};
 use super::condition::set_computation;
+use super::header_line::Name;
 use super::lowering::{self, Lower, Lowering};
 use super::parsed::{Melt, Parsed};
 use super::role::{Hints, Kind, Role};
@@ -9,7 +10,7 @@ use super::table::Table;
 use super::title::Counted;
 use super::words::Tag;
 use super::{Problem, Source};
-use crate::quantity::Reference;
+use crate::quantity::{EnergyUnit, Reference};
 use crate::schema::{Computation, Document, Levels, Named, Provenance};
 
 /// Reads a table of computed levels.
@@ -314,8 +315,20 @@ pub(super) fn no_energy(source: &Source, table: &Table, hints: &Hints) -> Proble
         )),
         None => table
             .with_columns(source, Problem::new("no column is known to hold energies"))
-            .with_help(format!("say which one does, as in {}", which(1))),
+            .with_help(format!(
+                "say which one does, as in {}",
+                which(first_with_energy_unit(table) + 1)
+            )),
     }
+}
+
+/// The first column whose header has the unit of an energy, else the first.
+fn first_with_energy_unit(table: &Table) -> usize {
+    let has_unit = |name: &Name| {
+        let mut units = name.reading.units.iter();
+        units.any(|unit| EnergyUnit::from_spelling(unit).is_some())
+    };
+    table.names.iter().position(has_unit).unwrap_or(0)
 }
 
 fn empty(rows: usize) -> Levels {

@@ -436,8 +436,9 @@ impl Lowering<'_> {
     /// Refuses energies that begin anew: another curve stands below the first.
     pub fn one_curve(&mut self, energies: &[f64], field: usize) -> Option<()> {
         let first = *energies.first()?;
-        let again = energies.iter().skip(2).position(|energy| *energy == first);
-        let Some(row) = again.map(|row| row + 2) else {
+        // A channel that is there twice is a rule's matter.
+        let again = |pair: &[f64]| pair[0] != first && pair[1] == first;
+        let Some(row) = energies.windows(2).position(again).map(|row| row + 1) else {
             return Some(());
         };
         let span = self.table.layout.cell(self.source, row, field);

@@ -319,3 +319,89 @@ fn many_comments_and_names_above_a_table_take_no_long() {
     }
     assert!(begun.elapsed() < Duration::from_secs(5));
 }
+
+/// What may change a number or a meaning beside what is understood is not read past.
+#[test]
+fn nothing_changes_a_number_in_silence() {
+    for (text, says) in [
+        (
+            "k band E_QP(eV)\n1 1 -5.6 meV\n1 2 2.1 meV\n",
+            "`meV` stands in a column without a name",
+        ),
+        (
+            "k,band,E_QP (eV),\n1,1,-560,meV\n1,2,210,meV\n",
+            "`meV` stands in a column without a name",
+        ),
+        (
+            "k band E_QP(eV)\n1 1 -5.6 E+01\n1 2 2.1 E+00\n",
+            "`E+01` stands in a column without a name",
+        ),
+        (
+            "k,band,E_QP (eV),unit\n1,1,-560,meV\n1,2,210,meV\n",
+            "the unit of this row is `meV`",
+        ),
+        (
+            "# energies in eV, sign reversed\nk,band,E_GW\n1,1,-5.6\n",
+            "nothing says the unit",
+        ),
+        (
+            "# DFT energies in Ha\nk,band,E_KS,E_GW\n1,1,-0.2,-5.6\n",
+            "the unit of column 4",
+        ),
+        (
+            "# a\nKE (eV),counts\n9,2\n8,2\n\n# b\n9,1\n8,1\n",
+            "begin anew",
+        ),
+        (
+            "# a\nKE (eV),counts\n9,2\n8,2\n# b\n9,1\n8,1\n",
+            "begin anew",
+        ),
+        (
+            "# spin up\n# E (eV) DOS\n-1 0.1\n0 0.2\n\n# spin down\n-1 0.15\n0 0.25\n",
+            "begin anew",
+        ),
+        (
+            "material PBE(eV) GW(eV)\nAlpha 0.6 1.17\nBeta 0.7 1.20\nGamma 1.1-1.2\n",
+            "expected 3 fields",
+        ),
+        ("k,band,E_QP (eV),occ (%)\n1,1,-5,100\n", "has no unit `%`"),
+        (
+            "# k-point 1  weight 0.25\nband E_QP(eV)\n1 -5\n2 2\n# k-point 2  weight 0.75\n1 -5\n2 2\n",
+            "begins as the title of a block",
+        ),
+        (
+            "k,band,E_QP - E_F (eV),E_MF (eV)\n1,1,-1,-0.5\n",
+            "the zero of column 4",
+        ),
+        (
+            "# resolution: 50 meV (sigma)\nKE (eV),counts\n1,2\n",
+            "`resolution`",
+        ),
+        (
+            "material,method,gap (eV)\nAlpha,PBE,0.6\n,G0W0,1.17\n",
+            "no material",
+        ),
+        ("k,band,binding energy (eV),occ\n1,1,5,2\n", "hold energies"),
+        (
+            "KE (eV),sweep 1 (counts),sweep 3 (counts)\n9,1,2\n8,3,4\n",
+            "not every sweep is known",
+        ),
+    ] {
+        let why = any(text, &Hints::default()).expect_err(text);
+        assert!(why.contains(says), "{text:?}\n{why}");
+    }
+    // A difference of methods is no gap; blank lines in a path make no bands, bands that go on no k.
+    let read = any(
+        "material,GW (eV),exp (eV),GW-exp (eV)\nAlpha,1.17,1.15,0.02\n",
+        &Hints::default(),
+    );
+    assert_eq!(read.unwrap()["value_ev"], serde_json::json!([1.17, 1.15]));
+    let read = any(
+        "kpath E_QP(eV)\n0 -1\n0.1 -2\n\n0.2 -3\n0.3 -4\n",
+        &Hints::default(),
+    )
+    .unwrap();
+    assert_eq!(read["band"], serde_json::Value::Null);
+    let read = any("band,E_QP (eV)\n1,-1\n2,0\n\n3,1\n4,2\n", &Hints::default()).unwrap();
+    assert_eq!(read["k_index"], serde_json::Value::Null);
+}

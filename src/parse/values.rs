@@ -387,7 +387,7 @@ fn advice(text: &str) -> &'static str {
     let digit = |c: char| c.is_ascii_digit();
     if has_decimal_comma(text) || (text.contains(',') && text.contains(digit)) {
         "write a point where the fraction begins and no separators of thousands, in the whole file; \
-         or say that commas are decimal marks, as `decimal = \"comma\"`"
+         or say that commas are decimal marks (decimal comma)"
     } else if text.contains(digit) && text.parse().is_ok_and(f64::is_infinite) {
         "it is beyond the largest number, about 1.8e308"
     } else {

@@ -18,6 +18,7 @@ pub enum DensityKind {
 
 /// A density of states on a grid, one row a point. Every array has the same length.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Density {
     /// `bandrule/density/1`.
     pub schema: String,

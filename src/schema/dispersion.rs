@@ -8,6 +8,7 @@ use crate::quantity::{AxisKind, Reference};
 
 /// Measured peaks, one row a peak. Every array has the same length.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Dispersion {
     /// `bandrule/dispersion/1`.
     pub schema: String,

@@ -41,6 +41,7 @@ impl Excitation {
 /// Gaps, ionisation energies and affinities, one row a value. Every array has the same length; a
 /// text that the file does not give is empty, a number `nan`.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Gaps {
     /// `bandrule/gaps/1`.
     pub schema: String,

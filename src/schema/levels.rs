@@ -8,6 +8,7 @@ use crate::quantity::Reference;
 
 /// What is known of the computation itself.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Computation {
     /// The method, in the user's words.
     pub method: Option<String>,
@@ -21,6 +22,7 @@ pub struct Computation {
 
 /// Band energies, one row a level, in file order. Every array that is present has `rows` entries.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Levels {
     /// `bandrule/levels/1`.
     pub schema: String,

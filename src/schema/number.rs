@@ -56,7 +56,10 @@ impl Serialize for Real {
 impl<'de> Deserialize<'de> for Real {
     fn deserialize<D: Deserializer<'de>>(deserializer: D) -> Result<Self, D::Error> {
         #[derive(Deserialize)]
-        #[serde(untagged)]
+        #[serde(
+            untagged,
+            expecting = "expected a number, or one of \"nan\", \"inf\", \"-inf\""
+        )]
         enum Either {
             Number(f64),
             Word(Word),

@@ -8,6 +8,7 @@ use super::{Document, Named, Provenance, number};
 /// A value against the parameters of its computation, one row a computation. Every array has the same
 /// length.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Series {
     /// `bandrule/series/1`.
     pub schema: String,

@@ -20,6 +20,7 @@ pub enum IntensityKind {
 
 /// What a file says of how its curve was measured. Absent means that the file does not say.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Conditions {
     /// Photon energy: of the source in photoemission, of the detector in inverse photoemission.
     pub photon_energy_ev: Option<f64>,
@@ -45,6 +46,7 @@ pub struct Conditions {
 
 /// A measured curve, one row a channel, in file order. Every array has the same length.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
 pub struct Spectrum {
     /// `bandrule/spectrum/1`.
     pub schema: String,
