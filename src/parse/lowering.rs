@@ -436,7 +436,8 @@ impl Lowering<'_> {
     /// Refuses energies that begin anew: another curve stands below the first.
     pub fn one_curve(&mut self, energies: &[f64], field: usize) -> Option<()> {
         let first = *energies.first()?;
-        // A channel that is there twice is a rule's matter.
+        // The same number as written; a channel that is there twice is a rule's matter.
+        #[allow(clippy::float_cmp)]
         let again = |pair: &[f64]| pair[0] != first && pair[1] == first;
         let Some(row) = energies.windows(2).position(again).map(|row| row + 1) else {
             return Some(());

@@ -296,12 +296,12 @@ impl Metadata {
         };
         for (span, sentence) in whole {
             let place = source.place(comment.start + span.start..comment.start + span.end);
-            self.take(&sentence, &place, kind)?;
+            self.take(sentence, &place, kind)?;
         }
         Ok(())
     }
 
-    fn take(&mut self, sentence: &Sentence, place: &Place, kind: Kind) -> Result<(), Problem> {
+    fn take(&mut self, sentence: Sentence, place: &Place, kind: Kind) -> Result<(), Problem> {
         let says = || Self::says(place);
         if let Some(role) = sentence.of {
             self.energy_kinds
@@ -457,7 +457,7 @@ mod tests {
     fn values_have_the_decimal_mark_of_the_file() {
         let source = Source::from_text("t", "Photon energy;21,22 eV");
         let mut problems = Problems::default();
-        let lines = [0..source.text().len()].into_iter();
+        let lines = std::iter::once(0..source.text().len());
         let metadata = read(
             &source,
             lines,

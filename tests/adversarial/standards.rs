@@ -21,6 +21,8 @@ pub fn inputs() -> Vec<Input> {
     inputs
 }
 
+// One list of inputs.
+#[allow(clippy::too_many_lines)]
 fn jcamp_dx() -> Vec<Input> {
     let table = "1 1 2 3 4";
     let jcamp = |name: &str, points: &str, table: &str| {
