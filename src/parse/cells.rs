@@ -71,7 +71,7 @@ pub(super) fn split(
     if dialect.delimiter == Delimiter::Blanks {
         let kept = &plain[..remark.unwrap_or(plain.len())];
         let pieces = apart(source, kept);
-        let others = aligned(&pieces, row.start, dialect)
+        let others = aligned(&pieces, row.start, dialect, by_signs(source, kept))
             .or_else(|| by_position(source, &pieces, row.start, dialect))
             .or_else(|| with_text_after(source, kept, dialect));
         if let Some(cells) = others {
@@ -110,13 +110,36 @@ fn apart(source: &Source, spans: &[Range<usize>]) -> Vec<Range<usize>> {
     pieces
 }
 
+/// Decimals that a range of values hardly has.
+const MANY_DECIMALS: usize = 4;
+
+/// Whether all numbers that have grown together have a sign between them and many decimals.
+fn by_signs(source: &Source, spans: &[Range<usize>]) -> bool {
+    spans.iter().all(|span| {
+        let text = source.slice(span.clone());
+        grown_together(text).is_none_or(|parts| {
+            let signed = parts[1..]
+                .iter()
+                .all(|part| text[part.clone()].starts_with(['-', '+']));
+            let decimals = text.len() - text.rfind('.').map_or(text.len(), |at| at + 1);
+            signed && decimals >= MANY_DECIMALS
+        })
+    })
+}
+
 /// Numbers that were taken apart as the cells of a row: they end where their columns do.
-fn aligned(pieces: &[Range<usize>], start: usize, dialect: &Dialect) -> Option<Cells> {
+fn aligned(
+    pieces: &[Range<usize>],
+    start: usize,
+    dialect: &Dialect,
+    apart_by_signs: bool,
+) -> Option<Cells> {
     let in_line = |(piece, extent): (&Range<usize>, &Range<usize>)| piece.end - start == extent.end;
-    let aligned = dialect
-        .extents
-        .as_ref()
-        .is_some_and(|extents| pieces.iter().zip(extents).all(in_line));
+    let aligned = match &dialect.extents {
+        Some(extents) => pieces.iter().zip(extents).all(in_line),
+        // Without columns to end in, a sign and many decimals must tell: `1.1-1.2` is a range.
+        None => apart_by_signs,
+    };
     (pieces.len() == dialect.fields && aligned).then(|| Cells {
         spans: pieces.to_vec(),
         left_out: None,

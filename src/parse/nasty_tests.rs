@@ -206,6 +206,11 @@ fn odd_texts_are_read_as_they_say() {
         );
         assert_eq!(document.energy_ev[0], energy, "{text:?}");
     }
+    // Numbers that fill their columns, beside a row that keeps to none.
+    let text = "k E_KS (eV) E_QP (eV)\n1 -12.34567890-13.45678901\n2 5.1 6.25D0\n";
+    let read = read_levels(Source::from_text("t", text), &Hints::default()).unwrap();
+    let energies = read.document.energy_quasiparticle_ev.unwrap();
+    assert_eq!(energies, [-13.456_789_01, 6.25]);
     let hartree = read_levels(
         Source::from_text("t", "n,E_HF (a.u.)\n1,-0.5\n"),
         &Hints::default(),
