@@ -94,12 +94,17 @@ fn schema(source: &Source) -> Result<(String, String), Problem> {
     }
 }
 
+/// Characters of a message about JSON.
+const MOST: usize = 400;
+
 fn broken(source: &Source, error: &serde_json::Error) -> Problem {
     let line = source.lines_from(0).nth(error.line().saturating_sub(1));
     let at = line.map_or(0, |line| {
         line.start + error.column().saturating_sub(1).min(line.end - line.start)
     });
-    Problem::new(format!("this is no document: {error}"))
+    // The words of the reader may repeat a key of any length.
+    let why: String = error.to_string().chars().take(MOST).collect();
+    Problem::new(format!("this is no document: {why}"))
         .at(source.place(at..at))
         .with_help("the file is damaged, was cut short or was edited: convert the original again")
 }
