@@ -35,6 +35,14 @@ pub(super) struct Reading {
     pub label: String,
 }
 
+impl Reading {
+    /// The number that ends the name, as in `G0W0 band 5`.
+    pub fn number(&self) -> Option<usize> {
+        let name = self.label.trim_end_matches(|c: char| c.is_ascii_digit());
+        self.label[name.len()..].parse().ok()
+    }
+}
+
 /// Reads a header cell of a table of `kind`.
 pub(super) fn read(cell: &str, kind: Kind) -> Reading {
     let cell = plain(cell);

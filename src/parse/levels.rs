@@ -88,9 +88,8 @@ fn path(lowering: &mut Lowering<'_>, fields: &[usize], document: &mut Levels) ->
         energies.extend(columns.iter().map(|column| column[row]));
     }
     let number = |index: usize| {
-        let label = &lowering.table.names[fields[index]].reading.label;
-        let digits = label.trim_start_matches(|c: char| !c.is_ascii_digit());
-        digits.parse::<i64>().ok()
+        let number = lowering.table.names[fields[index]].reading.number()?;
+        i64::try_from(number).ok()
     };
     let numbers: Option<Vec<i64>> = (0..bands).map(number).collect();
     let numbers = numbers.unwrap_or_else(|| (1..=i64::try_from(bands).unwrap_or(0)).collect());

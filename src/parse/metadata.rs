@@ -51,9 +51,6 @@ pub(super) struct Metadata {
     decimal: Decimal,
 }
 
-/// Characters of a comment that evidence quotes.
-const QUOTED: usize = 60;
-
 /// Pieces of a line beyond which it is no list of statements.
 const MOST_PIECES: usize = 50;
 
@@ -180,13 +177,7 @@ fn pair(text: &str, piece: Range<usize>) -> Option<(Range<usize>, Range<usize>)>
 impl Metadata {
     /// The comment's name as evidence.
     fn says(place: &Place) -> String {
-        let text: String = place.excerpt.trim().chars().take(QUOTED).collect();
-        let cut = if place.excerpt.trim().chars().nth(QUOTED).is_some() {
-            "…"
-        } else {
-            ""
-        };
-        format!("the comment `{text}{cut}` on line {}", place.line)
+        format!("the comment `{}` on line {}", place.quoted(), place.line)
     }
 
     fn statement(&mut self, statement: &Statement, kind: Kind) -> Result<(), Problem> {

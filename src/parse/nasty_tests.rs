@@ -395,6 +395,13 @@ fn nothing_changes_a_number_in_silence() {
         let why = any(text, &Hints::default()).expect_err(text);
         assert!(why.contains(says), "{text:?}\n{why}");
     }
+    // The number of a band ends its name, whatever digits its method has.
+    let read = any(
+        "kpath,G0W0 band 5 (eV),G0W0 band 6 (eV)\n0,-1,2\n",
+        &Hints::default(),
+    )
+    .unwrap();
+    assert_eq!(read["band"], serde_json::json!([5, 6]));
     // A difference of methods is no gap; blank lines in a path make no bands, bands that go on no k.
     let read = any(
         "material,GW (eV),exp (eV),GW-exp (eV)\nAlpha,1.17,1.15,0.02\n",

@@ -17,8 +17,6 @@ pub struct Skipped {
 
 /// Why a comment on energies may be no evidence.
 const IN_PART: &str = "a comment that is not understood to its end, so that nothing of it is used";
-/// Characters of a skipped line that are shown.
-const QUOTED: usize = 60;
 /// Lines that are listed.
 const LISTED: usize = 20;
 
@@ -59,12 +57,9 @@ pub(super) fn skipped(source: &Source, table: &Table) -> (Vec<Skipped>, usize) {
         .iter()
         .map(|&(at, reason)| {
             let place = source.place(at..at);
-            let text = place.excerpt.trim();
-            let cut = text.chars().nth(QUOTED).map_or("", |_| "…");
-            let quoted: String = text.chars().take(QUOTED).collect();
             let in_part = table.metadata.in_part.contains(&place.line);
             let reason = if in_part { IN_PART } else { reason };
-            (place.line, reason, quoted + cut)
+            (place.line, reason, place.quoted())
         })
         .filter(|(line, ..)| !understood.contains(line))
         .map(|(line, reason, text)| Skipped {

@@ -20,6 +20,8 @@ const ANCHOR_LINES: usize = 32;
 const NEAR: usize = 1 << 16;
 /// Bytes of a file that one task reads.
 const READ_AT_ONCE: usize = 8 << 20;
+/// Characters of a line that evidence quotes.
+const QUOTED_CHARS: usize = 60;
 /// Characters of a line that an excerpt shows.
 const EXCERPT_CHARS: usize = 120;
 /// Characters shown before the span where a line is cut.
@@ -71,6 +73,15 @@ pub(super) struct Line {
     pub end: usize,
     /// The first byte after its terminator.
     pub next: usize,
+}
+
+impl Place {
+    /// The beginning of the line, as evidence quotes it.
+    pub(super) fn quoted(&self) -> String {
+        let text = self.excerpt.trim();
+        let cut = text.chars().nth(QUOTED_CHARS).map_or("", |_| "…");
+        text.chars().take(QUOTED_CHARS).collect::<String>() + cut
+    }
 }
 
 impl Source {

@@ -48,7 +48,7 @@ impl Lower for Spectrum {
             reference: reference?,
             energy_ev: energies?,
             intensity,
-            intensity_kind: intensity_kind(unit.value),
+            intensity_kind: unit.value.into(),
             standard_uncertainty: uncertainty,
             conditions: conditions(lowering),
         };
@@ -99,11 +99,7 @@ fn all_sweeps(lowering: &mut Lowering<'_>, fields: &[usize]) -> Option<()> {
     if lowering.hints.columns.contains_key(&Role::Sweep) {
         return Some(());
     }
-    let number = |&field: &usize| {
-        let label = &lowering.table.names[field].reading.label;
-        let digits = label.trim_start_matches(|c: char| !c.is_ascii_digit());
-        digits.parse::<usize>().ok()
-    };
+    let number = |&field: &usize| lowering.table.names[field].reading.number();
     let mut numbers: Vec<usize> = fields.iter().filter_map(number).collect();
     numbers.sort_unstable();
     let first = numbers.first().copied().unwrap_or(1);
@@ -196,14 +192,6 @@ fn add_sweeps(lowering: &mut Lowering<'_>, document: &mut Spectrum) {
 #[allow(clippy::cast_precision_loss)]
 fn set_sweeps(conditions: &mut Conditions, sweeps: usize) {
     conditions.sweeps.get_or_insert(sweeps as f64);
-}
-
-pub(super) fn intensity_kind(unit: IntensityUnit) -> IntensityKind {
-    match unit {
-        IntensityUnit::Counts => IntensityKind::Counts,
-        IntensityUnit::CountsPerSecond => IntensityKind::CountsPerSecond,
-        IntensityUnit::Arbitrary => IntensityKind::Arbitrary,
-    }
 }
 
 /// What the comments say of the measurement.

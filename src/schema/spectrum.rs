@@ -4,7 +4,7 @@ use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
 use super::{Document, Provenance, number};
-use crate::quantity::{AxisKind, Reference};
+use crate::quantity::{AxisKind, IntensityUnit, Reference};
 
 /// What the intensity of a curve is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
@@ -16,6 +16,16 @@ pub enum IntensityKind {
     CountsPerSecond,
     /// Proportional to a signal.
     Arbitrary,
+}
+
+impl From<IntensityUnit> for IntensityKind {
+    fn from(unit: IntensityUnit) -> Self {
+        match unit {
+            IntensityUnit::Counts => Self::Counts,
+            IntensityUnit::CountsPerSecond => Self::CountsPerSecond,
+            IntensityUnit::Arbitrary => Self::Arbitrary,
+        }
+    }
 }
 
 /// What a file says of how its curve was measured. Absent means that the file does not say.

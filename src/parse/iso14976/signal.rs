@@ -82,11 +82,7 @@ pub(super) fn kind(variable: &Label, mode: SignalMode) -> Result<IntensityKind, 
             variable.label
         ));
     }
-    Ok(match unit {
-        IntensityUnit::Counts => IntensityKind::Counts,
-        IntensityUnit::CountsPerSecond => IntensityKind::CountsPerSecond,
-        IntensityUnit::Arbitrary => IntensityKind::Arbitrary,
-    })
+    Ok(unit.into())
 }
 
 /// Whether the name gives another unit than the unit itself.

@@ -66,11 +66,7 @@ impl Curve<'_> {
             reference: abscissa.reference,
             energy_ev,
             intensity: y,
-            intensity_kind: match unit {
-                Some(IntensityUnit::Counts) => IntensityKind::Counts,
-                Some(IntensityUnit::CountsPerSecond) => IntensityKind::CountsPerSecond,
-                _ => IntensityKind::Arbitrary,
-            },
+            intensity_kind: unit.map_or(IntensityKind::Arbitrary, IntensityKind::from),
             standard_uncertainty: None,
             conditions: self.conditions(),
         })
